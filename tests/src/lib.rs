@@ -1,0 +1,1 @@
+//! Reference, property and cross-target tests.
