@@ -1,0 +1,73 @@
+// Starts the core: checks its bytes against the seal, unpacks them, hands out its functions.
+//
+// The core lies outside the page's script policy, so it is hashed before it is started. @noble/hashes: small, audited,
+// and works where crypto.subtle is absent.
+
+/** @import { Core, Texts } from './types.js' */
+import { sha256 } from '@noble/hashes/sha2.js';
+import { bytesToHex, utf8ToBytes } from '@noble/hashes/utils.js';
+import init, * as wasm from '../pkg/bandleaf_wasm.js';
+
+/** The page cannot go on; `altered` where a part of the file is not the one that was sealed. */
+export class StartError extends Error {
+  /**
+   * @param {string} sentence
+   * @param {boolean} altered
+   */
+  constructor(sentence, altered) {
+    super(sentence);
+    this.altered = altered;
+  }
+}
+
+/**
+ * @param {Texts} texts
+ * @returns {Promise<Core>}
+ */
+export async function startCore(texts) {
+  if (typeof WebAssembly !== 'object') throw new StartError('This browser does not run WebAssembly, which the calculation needs. Open the file in a current Chromium, Chrome, Edge or Firefox, or ask whoever looks after this computer to allow it.', false);
+  if (typeof DecompressionStream !== 'function') throw new StartError('This browser is too old to unpack the calculation. Open the file in Chromium, Chrome or Edge 109 or newer, or in Firefox 115 or newer.', false);
+  if (!sealedDigest(texts.seal)) throw new StartError('The seal of this file cannot be read: the file was changed or cut short. Ask for the original file.', true);
+  if (digestOf(texts.wasm) !== sealedDigest(texts.seal)) throw new StartError('The calculation inside this file is not the one that was sealed: the section “wasm” was changed. Ask for the original file.', true);
+  try {
+    await init({ module_or_path: await inflate(decodeBase64(texts.wasm)) });
+  } catch (cause) {
+    throw new StartError(`The calculation could not be started (${cause instanceof Error ? cause.message : cause}). Open the file in another browser, or ask for the original file.`, false);
+  }
+  const { initSync: _, ...functions } = /** @type {any} */ (wasm);
+  return Object.freeze({ ...functions });
+}
+
+/**
+ * The digest of the core that the seal names; null where the seal cannot be read.
+ * @param {string} seal
+ * @returns {string|null}
+ */
+function sealedDigest(seal) {
+  try {
+    return JSON.parse(seal).digests.wasm ?? null;
+  } catch {
+    return null;
+  }
+}
+
+/** @param {string} text */
+function digestOf(text) {
+  return `sha256:${bytesToHex(sha256(utf8ToBytes(text)))}`;
+}
+
+/** @param {string} text */
+function decodeBase64(text) {
+  const binary = atob(text);
+  const bytes = new Uint8Array(binary.length);
+  for (let i = 0; i < binary.length; i += 1) bytes[i] = binary.charCodeAt(i);
+  return bytes;
+}
+
+/**
+ * @param {Uint8Array<ArrayBuffer>} bytes
+ */
+async function inflate(bytes) {
+  const unpacked = new Blob([bytes]).stream().pipeThrough(new DecompressionStream('deflate-raw'));
+  return new Uint8Array(await new Response(unpacked).arrayBuffer());
+}

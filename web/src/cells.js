@@ -1,0 +1,79 @@
+// Typed text to numbers, by the core's own rules for one cell; several repeats are written "151; 150; 151".
+
+/** @import { Core, Cell, Point, Visit } from './types.js' */
+import { cellValue, columnsOf, typedText, valueText } from './visit.js';
+
+/**
+ * @typedef {{ values: number[]|null, alternatives: number[][]|null, sentence: string|null }} Pieces
+ * values where everything could be read; alternatives where the text can be read in two ways; a sentence where it cannot be read
+ */
+
+/**
+ * @param {Core} core
+ * @param {string} text
+ * @returns {Pieces}
+ */
+export function readPieces(core, text) {
+  const pieces = text.split(/[;\n\t]/).map((piece) => piece.trim()).filter((piece) => piece !== '');
+  if (pieces.length === 0) return { values: null, alternatives: null, sentence: null };
+  const cells = pieces.map((piece) => core.parse_cell(piece));
+  const bad = cells.find((cell) => cell.value === null && cell.alternatives.length < 2);
+  if (bad) return { values: null, alternatives: null, sentence: bad.problem?.sentence ?? 'This is not a number.' };
+  if (cells.some((cell) => cell.alternatives.length === 2)) return { values: null, alternatives: [readings(cells, 0), readings(cells, 1)], sentence: null };
+  return { values: readings(cells, 0), alternatives: null, sentence: null };
+}
+
+/**
+ * The value of a cell: one number, a list of repeats, or null.
+ * @param {number[]|null} values
+ * @param {string} column
+ * @returns {number|number[]|null}
+ */
+export function toCell(values, column) {
+  if (!values || values.length === 0) return null;
+  if (values.length === 1) return values[0];
+  return column === 'indication' ? values : null;
+}
+
+/**
+ * What a cell shows: the text as it was typed, but only where it still reads as the value that is computed with, since a
+ * file could carry another one.
+ * @param {Core} core
+ * @param {Point|undefined} point
+ * @param {string} column
+ */
+export function shownText(core, point, column) {
+  if (!point) return '';
+  const value = cellValue(point, column);
+  const text = typedText(point, column);
+  if (text === null) return valueText(value);
+  if (value === null) return text;
+  return valueText(toCell(readPieces(core, text).values, column)) === valueText(value) ? text : valueText(value);
+}
+
+/**
+ * What cannot be used in a row as it was typed.
+ * @param {Core} core
+ * @param {Visit} visit
+ * @param {Point} point
+ * @returns {{ column: string, label: string, text: string, sentence: string|null, alternatives: number[][]|null }|null}
+ */
+export function rowTrouble(core, visit, point) {
+  for (const { id, label } of columnsOf(visit)) {
+    const text = typedText(point, id) ?? '';
+    if (text.trim() === '' || cellValue(point, id) !== null) continue;
+    const { values, alternatives, sentence } = readPieces(core, text);
+    if (alternatives) return { column: id, label, text, sentence: null, alternatives };
+    const several = values && values.length > 1 ? `Only the indication can have several values; ${label} needs one number.` : null;
+    return { column: id, label, text, sentence: sentence ?? several, alternatives: null };
+  }
+  return null;
+}
+
+/**
+ * @param {Cell[]} cells
+ * @param {number} choice
+ */
+function readings(cells, choice) {
+  return cells.map((cell) => (cell.alternatives.length === 2 ? cell.alternatives[choice] : /** @type {number} */ (cell.value)));
+}

@@ -1,0 +1,121 @@
+// What was read from a text or a file, and what only a person can say about it: which column is which, comma or point.
+
+/** @import { Parts } from './store.js' */
+/** @import { Column, Intake, Panel, Role } from './types.js' */
+import { useMemo, useState } from 'preact/hooks';
+import { Choice } from './fields.jsx';
+import { PanelFrame } from './panel.jsx';
+import { pointsOf } from './visit.js';
+import { addIntake, readIntake } from './commands.js';
+import { refusal } from './store.js';
+
+const PREVIEW = 8;
+
+/** @param {Parts & { intake: NonNullable<Panel['intake']>, onClose: () => void }} props */
+export function IntakePanel({ core, store, state, intake, onClose }) {
+  const [options, setOptions] = useState(/** @type {Record<string, any>} */ ({}));
+  const { read, sentence } = useMemo(() => attempt(() => readIntake(core, intake, options)), [intake, options]);
+  const held = pointsOf(state.visit).length;
+  if (!read) return <PanelFrame title="Points from outside" onClose={onClose}><p class="trouble">{sentence}</p></PanelFrame>;
+  const count = read.points.length;
+  const add = (/** @type {boolean} */ replace) => {
+    onClose();
+    addIntake(store, read, replace, intake.source);
+  };
+  return (
+    <PanelFrame title={`Points from ${intake.source}`} onClose={onClose} wide>
+      <Preview intake={read} />
+      <Columns intake={read} onChange={(columns) => setOptions(merged(options, { columns }))} />
+      {read.questions.map((question) => (
+        <Choice
+          key={question.code + question.column} label={question.sentence} value=""
+          options={question.choices.map((choice, at) => ({ value: String(at), label: choice.label }))}
+          onChoose={(at) => setOptions(merged(options, question.choices[Number(at)].option))}
+        />
+      ))}
+      {read.problems.length > 0 && (
+        <section aria-label="Not read">
+          <h3>Not read</h3>
+          <ul class="plain">{read.problems.slice(0, 200).map((problem) => <li key={problem.place + problem.sentence}>{problem.sentence}</li>)}</ul>
+          {read.problems.length > 200 && <p class="hint">and {read.problems.length - 200} more.</p>}
+        </section>
+      )}
+      <div class="buttons">
+        <button type="button" class="primary" disabled={count === 0} onClick={() => add(false)}>{held > 0 ? `Add ${count} behind the ${held} rows` : `Add ${count} ${count === 1 ? 'row' : 'rows'}`}</button>
+        {held > 0 && <button type="button" disabled={count === 0} onClick={() => add(true)}>Put {count} in their place</button>}
+        {Object.keys(options).length > 0 && <button type="button" onClick={() => setOptions({})}>Ask again</button>}
+      </div>
+    </PanelFrame>
+  );
+}
+
+/** @param {{ intake: Intake }} props */
+function Preview({ intake }) {
+  return (
+    <div class="scroll" tabIndex={0} role="region" aria-label="First rows as they were read">
+      <table class="figures">
+        <thead><tr>{intake.columns.map((column) => <th key={column.index} scope="col">{columnName(column)}</th>)}</tr></thead>
+        <tbody>{intake.rows.slice(0, PREVIEW).map((row, at) => <tr key={at}>{row.map((cell, index) => <td key={index}>{cell}</td>)}</tr>)}</tbody>
+      </table>
+    </div>
+  );
+}
+
+/** @param {{ intake: Intake, onChange: (columns: { reference?: number, indication?: number, influences?: Record<string, number> }) => void }} props */
+function Columns({ intake, onChange }) {
+  const at = (/** @type {'reference'|'indication'} */ role) => intake.columns.find((column) => column.role === role)?.index;
+  const choose = (/** @type {'reference'|'indication'} */ role) => (/** @type {any} */ event) => {
+    const chosen = { reference: at('reference'), indication: at('indication'), [role]: Number(event.currentTarget.value) };
+    onChange(Object.fromEntries(Object.entries(chosen).filter(([, index]) => index !== undefined)));
+  };
+  return (
+    <div class="pair">
+      {/** @type {const} */ (['reference', 'indication']).map((role) => (
+        <label key={role}>
+          {role === 'reference' ? 'Reference value is in' : 'Indication is in'}
+          <select value={at(role) ?? ''} onChange={choose(role)}>
+            <option value="" disabled>choose a column</option>
+            {intake.columns.map((column) => <option key={column.index} value={column.index}>{columnName(column)}</option>)}
+          </select>
+        </label>
+      ))}
+    </div>
+  );
+}
+
+/** @param {Column} column */
+function columnName(column) {
+  const name = column.name || `column ${column.index + 1}`;
+  return column.unit ? `${name} / ${column.unit}` : name;
+}
+
+/**
+ * @param {Record<string, any>} options
+ * @param {Record<string, any>} change
+ */
+function merged(options, change) {
+  const both = { ...options, ...change };
+  for (const key of Object.keys(change)) {
+    if (isPlain(options[key]) && isPlain(change[key])) both[key] = { ...options[key], ...change[key] };
+  }
+  return both;
+}
+
+/** @param {unknown} value */
+function isPlain(value) {
+  return typeof value === 'object' && value !== null && !Array.isArray(value);
+}
+
+/**
+ * @param {() => Intake} action
+ * @returns {{ read: Intake, sentence: null } | { read: null, sentence: string }}
+ */
+function attempt(action) {
+  try {
+    return { read: action(), sentence: null };
+  } catch (problem) {
+    return { read: null, sentence: refusal(problem).sentence };
+  }
+}
+
+/** @typedef {Role} _Role */

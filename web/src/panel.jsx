@@ -1,0 +1,32 @@
+// A panel beside the sheet: not modal, so that the picture and the answers show the effect of a change at once.
+
+import { useEffect, useRef } from 'preact/hooks';
+
+/**
+ * Takes the focus when it opens, gives it back when it closes; Escape closes.
+ * @param {{ title: string, onClose: () => void, children: import('preact').ComponentChildren, wide?: boolean }} props
+ */
+export function PanelFrame({ title, onClose, children, wide }) {
+  const frame = useRef(/** @type {HTMLElement|null} */ (null));
+  useEffect(() => {
+    const before = document.activeElement;
+    frame.current?.querySelector('h2')?.focus();
+    return () => {
+      if (before instanceof HTMLElement && before.isConnected) before.focus();
+    };
+  }, []);
+  return (
+    <section
+      ref={frame} class={wide ? 'panel wide' : 'panel'} role="dialog" aria-label={title}
+      onKeyDown={(event) => {
+        if (event.key === 'Escape') onClose();
+      }}
+    >
+      <header>
+        <h2 tabIndex={-1}>{title}</h2>
+        <button type="button" class="quiet" onClick={onClose}>Close</button>
+      </header>
+      <div class="panel-body">{children}</div>
+    </section>
+  );
+}
