@@ -220,7 +220,8 @@ def iso28037(example, suffix, noise_sd, repeats):
     own += [
         relative(f"fit.covariance[{i}][{j}]", fit.inverse[i][j], 1e-12, source=OWN) for i in range(2) for j in range(2)
     ]
-    value, scale = exact.line_inverse(fit, Fraction("10.5"), 1, Fraction(noise_sd) ** 2)
+    counted = exact.Fit([[1, a] for a in x], y, repeats)
+    value, scale = exact.line_inverse(counted, Fraction("10.5"), 1, Fraction(noise_sd) ** 2)
     reading = published_expectations(
         example, {"x_at_reading": "readings[0].linearised.estimate", "u_x": "readings[0].linearised.scale"}
     ) + [
