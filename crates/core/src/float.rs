@@ -43,6 +43,26 @@ pub fn hypot(a: f64, b: f64) -> f64 {
     libm::hypot(a, b)
 }
 
+/// The sine of an angle in radians.
+pub fn sin(x: f64) -> f64 {
+    libm::sin(x)
+}
+
+/// The cosine of an angle in radians.
+pub fn cos(x: f64) -> f64 {
+    libm::cos(x)
+}
+
+/// The angle in radians between −π/2 and π/2 whose tangent is `x`.
+pub fn atan(x: f64) -> f64 {
+    libm::atan(x)
+}
+
+/// The magnitude.
+pub fn abs(x: f64) -> f64 {
+    libm::fabs(x)
+}
+
 /// The complementary error function.
 pub fn erfc(x: f64) -> f64 {
     libm::erfc(x)
@@ -69,4 +89,9 @@ pub fn mantissa_and_exponent(x: f64) -> (f64, i32) {
 /// `x · 2^exponent`, exact unless it leaves the range of doubles.
 pub fn times_power_of_two(x: f64, exponent: i32) -> f64 {
     libm::ldexp(x, exponent)
+}
+
+/// The cosine.
+pub fn cos(x: f64) -> f64 {
+    libm::cos(x)
 }
