@@ -55,24 +55,40 @@ impl Scenario {
     }
 
     fn truth(&self, x: f64) -> f64 {
-        self.coefficients.iter().rev().fold(0.0, |sum, c| sum * x + c)
+        self.coefficients
+            .iter()
+            .rev()
+            .fold(0.0, |sum, c| sum * x + c)
     }
 
     fn abscissae(&self) -> Vec<f64> {
-        (0..self.points).map(|i| self.place(i as f64 / (self.points - 1) as f64)).collect()
+        (0..self.points)
+            .map(|i| self.place(i as f64 / (self.points - 1) as f64))
+            .collect()
     }
 
     fn visit(&self, random: &mut SplitMix64) -> Visit {
         let points = self.abscissae().into_iter().map(|x| Point {
             reference: Some(x),
-            indication: Some(Indication::One(self.truth(x) + self.noise * random.normal())),
+            indication: Some(Indication::One(
+                self.truth(x) + self.noise * random.normal(),
+            )),
             ..Point::default()
         });
-        let terms = ["1", "x", "x^2"].iter().take(self.coefficients.len()).map(|t| Term::Expression((*t).to_owned()));
+        let terms = ["1", "x", "x^2"]
+            .iter()
+            .take(self.coefficients.len())
+            .map(|t| Term::Expression((*t).to_owned()));
         Visit {
-            instrument: Instrument { range: Some(RANGE), ..Instrument::default() },
+            instrument: Instrument {
+                range: Some(RANGE),
+                ..Instrument::default()
+            },
             points: points.collect(),
-            model: Model { terms: Terms::List(terms.collect()), ..Model::default() },
+            model: Model {
+                terms: Terms::List(terms.collect()),
+                ..Model::default()
+            },
             coverage: Some(STATED),
             ..Visit::default()
         }
@@ -93,7 +109,10 @@ impl Scenario {
                 let shown = self.truth(x) + self.noise * random.normal();
                 counts.curve[k] += usize::from(holds(curve.curve_interval[k], self.truth(x)));
                 counts.indication[k] += usize::from(holds(curve.indication_interval[k], shown));
-                let reading = Reading { indications: vec![shown], ..Reading::default() };
+                let reading = Reading {
+                    indications: vec![shown],
+                    ..Reading::default()
+                };
                 let value = appraisal.read(&reading).value.expect("a value");
                 counts.value[k] += usize::from(holds(value.interval, x));
             }
@@ -118,7 +137,10 @@ impl Scenario {
             return line;
         }
         let mean = second / places.len() as f64;
-        let bend: f64 = places.iter().map(|p| libm::pow((p - centre) * (p - centre) - mean, 2.0)).sum();
+        let bend: f64 = places
+            .iter()
+            .map(|p| libm::pow((p - centre) * (p - centre) - mean, 2.0))
+            .sum();
         line + 4.0 * (x - centre) * (x - centre) / bend
     }
 }
@@ -135,13 +157,21 @@ pub fn standard_errors(held: usize, visits: usize) -> f64 {
 
 /// The scenarios: line and bent line, 5 and 12 points, noise from small to such that the slope is badly known.
 pub fn scenarios(visits: usize) -> Vec<Scenario> {
-    let shapes: [(&'static str, &'static [f64]); 2] = [("line", &[0.5, 1.01]), ("quadratic", &[0.5, 0.8, 0.002])];
+    let shapes: [(&'static str, &'static [f64]); 2] =
+        [("line", &[0.5, 1.01]), ("quadratic", &[0.5, 0.8, 0.002])];
     let mut all = Vec::new();
     for (shape, coefficients) in shapes {
         for points in [5, 12] {
             for noise in [0.05, 1.0, 10.0, 40.0] {
                 let seed = 1000 + all.len() as u64;
-                all.push(Scenario { shape, coefficients, points, noise, visits, seed });
+                all.push(Scenario {
+                    shape,
+                    coefficients,
+                    points,
+                    noise,
+                    visits,
+                    seed,
+                });
             }
         }
     }

@@ -14,10 +14,14 @@ const ROUNDS: u64 = 3_000;
 fn leaves(value: &Value, path: String, found: &mut Vec<String>) {
     match value {
         Value::Array(list) if !list.is_empty() => {
-            list.iter().enumerate().for_each(|(i, entry)| leaves(entry, format!("{path}/{i}"), found));
+            list.iter()
+                .enumerate()
+                .for_each(|(i, entry)| leaves(entry, format!("{path}/{i}"), found));
         }
         Value::Object(fields) if !fields.is_empty() => {
-            fields.iter().for_each(|(name, entry)| leaves(entry, format!("{path}/{name}"), found));
+            fields
+                .iter()
+                .for_each(|(name, entry)| leaves(entry, format!("{path}/{name}"), found));
         }
         _ => found.push(path),
     }
@@ -64,7 +68,9 @@ fn mutated(seed: u64) -> Value {
 /// Whether a number in a debug text is none; texts in quotes are passed over.
 fn has_no_number(debug: &str) -> bool {
     debug.split('"').step_by(2).any(|outside| {
-        outside.split(|c: char| !c.is_ascii_alphanumeric()).any(|word| word == "NaN" || word == "inf")
+        outside
+            .split(|c: char| !c.is_ascii_alphanumeric())
+            .any(|word| word == "NaN" || word == "inf")
     })
 }
 
@@ -73,13 +79,22 @@ fn examine(visit: &Visit) {
     let report = appraisal.report();
     let told = format!("{report:?}").replace("\\\"", "");
     assert!(!has_no_number(&told), "a number that is none in {told}");
-    assert!(report.fit.is_some() || report.messages.iter().any(|m| !m.sentence.is_empty()), "nothing is said");
+    assert!(
+        report.fit.is_some() || report.messages.iter().any(|m| !m.sentence.is_empty()),
+        "nothing is said"
+    );
     for places in [vec![], vec![f64::NAN, 1e308, -1.0], vec![0.0, 5e-324]] {
-        let curve = format!("{:?}", appraisal.curve(&places).map(|curve| curve.estimate.len()));
+        let curve = format!(
+            "{:?}",
+            appraisal.curve(&places).map(|curve| curve.estimate.len())
+        );
         assert!(!curve.is_empty());
     }
     for bad in [f64::NAN, f64::INFINITY, 1e308, -1e308, 0.0, 5e-324] {
-        let value = appraisal.read(&Reading { indications: vec![bad], ..Reading::default() });
+        let value = appraisal.read(&Reading {
+            indications: vec![bad],
+            ..Reading::default()
+        });
         assert!(!value.indications.is_empty());
     }
 }
@@ -89,16 +104,29 @@ fn nothing_in_a_visit_makes_the_core_panic() {
     let mut failures = Vec::new();
     let mut computed = 0;
     for seed in 0..ROUNDS {
-        let Ok(visit) = serde_json::from_value::<Visit>(mutated(seed)) else { continue };
+        let Ok(visit) = serde_json::from_value::<Visit>(mutated(seed)) else {
+            continue;
+        };
         let fine = catch_unwind(AssertUnwindSafe(|| examine(&visit)));
         computed += 1;
         if let Err(panic) = fine {
-            let said = panic.downcast_ref::<String>().map(String::as_str).or(panic.downcast_ref::<&str>().copied());
+            let said = panic
+                .downcast_ref::<String>()
+                .map(String::as_str)
+                .or(panic.downcast_ref::<&str>().copied());
             failures.push(format!("seed {seed}: {:.300}", said.unwrap_or("panic")));
         }
     }
-    assert!(computed > ROUNDS / 2, "only {computed} visits could be read");
-    assert!(failures.is_empty(), "{} of {computed}\n{}", failures.len(), failures.join("\n"));
+    assert!(
+        computed > ROUNDS / 2,
+        "only {computed} visits could be read"
+    );
+    assert!(
+        failures.is_empty(),
+        "{} of {computed}\n{}",
+        failures.len(),
+        failures.join("\n")
+    );
 }
 
 #[test]
@@ -109,7 +137,14 @@ fn generated_visits_cover_both_outcomes() {
         let visit: Visit = serde_json::from_value(body).expect("a visit");
         examine(&visit);
         let report = appraise(&visit).outline();
-        if report.fit.is_some() { with += 1 } else { without += 1 }
+        if report.fit.is_some() {
+            with += 1
+        } else {
+            without += 1
+        }
     }
-    assert!(with > 350 && without >= 20, "{with} with a fit, {without} without");
+    assert!(
+        with > 350 && without >= 20,
+        "{with} with a fit, {without} without"
+    );
 }
