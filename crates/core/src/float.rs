@@ -90,8 +90,3 @@ pub fn mantissa_and_exponent(x: f64) -> (f64, i32) {
 pub fn times_power_of_two(x: f64, exponent: i32) -> f64 {
     libm::ldexp(x, exponent)
 }
-
-/// The cosine.
-pub fn cos(x: f64) -> f64 {
-    libm::cos(x)
-}

@@ -1,6 +1,7 @@
 //! A term written for people, in notation that reads back as the same term.
 
 use super::{Node, Operation};
+use crate::display::raised;
 
 /// How tightly the outermost operation binds.
 #[derive(Clone, Copy, PartialEq, PartialOrd)]
@@ -14,16 +15,6 @@ enum Binding {
 
 pub(super) fn display(root: &Node, variable: &str, influences: &[String]) -> String {
     Writer { variable, influences }.write(root)
-}
-
-/// An integer in raised digits: `²`, `⁻¹`.
-pub(super) fn raised(integer: &str) -> String {
-    const DIGITS: [char; 10] = ['⁰', '¹', '²', '³', '⁴', '⁵', '⁶', '⁷', '⁸', '⁹'];
-    let raise = |c: char| match c.to_digit(10).and_then(|digit| DIGITS.get(digit as usize)) {
-        Some(&digit) => digit,
-        None => '⁻',
-    };
-    integer.chars().map(raise).collect()
 }
 
 /// A number in the shortest decimals that read back as the same double.

@@ -335,8 +335,7 @@ fn no_text_makes_the_parser_panic() {
     let mut draws = Draws(1);
     let (mut accepted, mut refusals) = (0, 0);
     for _ in 0..40_000 {
-        let text: String =
-            (0..draws.below(7)).filter_map(|_| pieces.get(draws.below(pieces.len())).copied()).collect();
+        let text: String = (0..draws.below(7)).filter_map(|_| pieces.get(draws.below(pieces.len())).copied()).collect();
         match Expression::parse(&text, "x", &influences()) {
             Ok(term) => {
                 accepted += 1;

@@ -1,7 +1,7 @@
 //! The unit of a term's coefficient, from the exponents of the variable and of the influence quantities in the term.
 
-use super::display::raised;
 use super::{Function, Node, Operation};
+use crate::display::raised;
 use std::collections::BTreeMap;
 
 /// Exponents by quantity: `None` is the variable, `Some(i)` an influence quantity.
