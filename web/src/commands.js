@@ -8,7 +8,7 @@ import { readPieces, toCell } from './cells.js';
 import { chooseFile, fileName, readFile, saveFile } from './files.js';
 import { ownTexts } from './own.js';
 import { refusal } from './store.js';
-import { blankVisit, cellChange, pointsOf, withIntake, withPoint } from './visit.js';
+import { blankVisit, cellChange, influencesOf, pointsOf, withIntake, withPoint } from './visit.js';
 import { isSound, outcomeWords, titleOf } from './words.js';
 
 export const DEMOS = [
@@ -111,7 +111,7 @@ export async function openFile(core, store, file) {
  */
 export function takeIn(core, store, intake) {
   try {
-    const read = readIntake(core, intake, {});
+    const read = readIntake(core, intake, { influence_names: influencesOf(store.state().visit) });
     const asks = read.questions.length > 0 || (intake.bytes !== null && pointsOf(store.state().visit).length > 0 && read.points.length > 0);
     if (asks) store.dispatch({ type: 'panel', panel: { name: 'intake', intake } });
     else addIntake(store, read, false, intake.source);
@@ -305,7 +305,9 @@ function quoted(text) {
 function unitWords(visit, intake) {
   const { unit, output } = visit.instrument ?? {};
   const sheet = { reference: unit, indication: output?.unit || unit };
-  const other = intake.columns.find(({ role, unit: read }) => (role === 'reference' || role === 'indication') && read && sheet[role] && sheet[role] !== read);
-  if (!other) return '';
-  return ` The header says ${other.unit} where the sheet has ${sheet[/** @type {'reference'|'indication'} */ (other.role)]}: nothing was converted.`;
+  for (const { role, unit: read } of intake.columns) {
+    const own = role === 'reference' || role === 'indication' ? sheet[role] : undefined;
+    if (own && read && own !== read) return ` The header says ${read} where the sheet has ${own}: nothing was converted.`;
+  }
+  return '';
 }

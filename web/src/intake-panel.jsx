@@ -1,11 +1,11 @@
 // What was read from a text or a file, and what only a person can say about it: which column is which, comma or point.
 
 /** @import { Parts } from './store.js' */
-/** @import { Column, Intake, Panel, Role } from './types.js' */
+/** @import { Column, Intake, Panel } from './types.js' */
 import { useMemo, useState } from 'preact/hooks';
 import { Choice } from './fields.jsx';
 import { PanelFrame } from './panel.jsx';
-import { pointsOf } from './visit.js';
+import { influencesOf, pointsOf } from './visit.js';
 import { addIntake, readIntake } from './commands.js';
 import { refusal } from './store.js';
 
@@ -13,7 +13,8 @@ const PREVIEW = 8;
 
 /** @param {Parts & { intake: NonNullable<Panel['intake']>, onClose: () => void }} props */
 export function IntakePanel({ core, store, state, intake, onClose }) {
-  const [options, setOptions] = useState(/** @type {Record<string, any>} */ ({}));
+  const known = { influence_names: influencesOf(state.visit) };
+  const [options, setOptions] = useState(/** @type {Record<string, any>} */ (known));
   const { read, sentence } = useMemo(() => attempt(() => readIntake(core, intake, options)), [intake, options]);
   const held = pointsOf(state.visit).length;
   if (!read) return <PanelFrame title="Points from outside" onClose={onClose}><p class="trouble">{sentence}</p></PanelFrame>;
@@ -25,12 +26,12 @@ export function IntakePanel({ core, store, state, intake, onClose }) {
   return (
     <PanelFrame title={`Points from ${intake.source}`} onClose={onClose} wide>
       <Preview intake={read} />
-      <Columns intake={read} onChange={(columns) => setOptions(merged(options, { columns }))} />
+      <Columns intake={read} onChange={(columns) => setOptions({ ...options, columns: { ...options.columns, ...columns } })} />
       {read.questions.map((question) => (
         <Choice
           key={question.code + question.column} label={question.sentence} value=""
           options={question.choices.map((choice, at) => ({ value: String(at), label: choice.label }))}
-          onChoose={(at) => setOptions(merged(options, question.choices[Number(at)].option))}
+          onChoose={(at) => setOptions(question.choices[Number(at)].option)}
         />
       ))}
       {read.problems.length > 0 && (
@@ -43,7 +44,7 @@ export function IntakePanel({ core, store, state, intake, onClose }) {
       <div class="buttons">
         <button type="button" class="primary" disabled={count === 0} onClick={() => add(false)}>{held > 0 ? `Add ${count} behind the ${held} rows` : `Add ${count} ${count === 1 ? 'row' : 'rows'}`}</button>
         {held > 0 && <button type="button" disabled={count === 0} onClick={() => add(true)}>Put {count} in their place</button>}
-        {Object.keys(options).length > 0 && <button type="button" onClick={() => setOptions({})}>Ask again</button>}
+        {Object.keys(options).length > 1 && <button type="button" onClick={() => setOptions(known)}>Ask again</button>}
       </div>
     </PanelFrame>
   );
@@ -61,12 +62,11 @@ function Preview({ intake }) {
   );
 }
 
-/** @param {{ intake: Intake, onChange: (columns: { reference?: number, indication?: number, influences?: Record<string, number> }) => void }} props */
+/** @param {{ intake: Intake, onChange: (columns: Record<string, number>) => void }} props */
 function Columns({ intake, onChange }) {
   const at = (/** @type {'reference'|'indication'} */ role) => intake.columns.find((column) => column.role === role)?.index;
   const choose = (/** @type {'reference'|'indication'} */ role) => (/** @type {any} */ event) => {
-    const chosen = { reference: at('reference'), indication: at('indication'), [role]: Number(event.currentTarget.value) };
-    onChange(Object.fromEntries(Object.entries(chosen).filter(([, index]) => index !== undefined)));
+    onChange({ [role]: Number(event.currentTarget.value) });
   };
   return (
     <div class="pair">
@@ -90,23 +90,6 @@ function columnName(column) {
 }
 
 /**
- * @param {Record<string, any>} options
- * @param {Record<string, any>} change
- */
-function merged(options, change) {
-  const both = { ...options, ...change };
-  for (const key of Object.keys(change)) {
-    if (isPlain(options[key]) && isPlain(change[key])) both[key] = { ...options[key], ...change[key] };
-  }
-  return both;
-}
-
-/** @param {unknown} value */
-function isPlain(value) {
-  return typeof value === 'object' && value !== null && !Array.isArray(value);
-}
-
-/**
  * @param {() => Intake} action
  * @returns {{ read: Intake, sentence: null } | { read: null, sentence: string }}
  */
@@ -117,5 +100,3 @@ function attempt(action) {
     return { read: null, sentence: refusal(problem).sentence };
   }
 }
-
-/** @typedef {Role} _Role */

@@ -88,7 +88,7 @@
 
 /** @typedef {{ outline(): Report, report(): Report, curve(first: number, last: number, count: number): Float64Array, read(reading: object): Value, free(): void }} Appraisal */
 /** @typedef {{ value: number|null, alternatives: number[], problem: Problem|null }} Cell */
-/** @typedef {'reference'|'indication'|{ influence: string }|null} Role */
+/** @typedef {string|{ influence: string }|null} Role */
 /** @typedef {{ index: number, name: string, unit: string, role: Role, numbers: number }} Column */
 /** @typedef {{ code: string, column: number|null, sentence: string, choices: { label: string, option: Record<string, any> }[] }} Question */
 /** @typedef {{ columns: Column[], rows: string[][], points: Point[], problems: Problem[], questions: Question[], header: boolean }} Intake */

@@ -159,7 +159,8 @@ export function withIntake(visit, intake, replace, entering) {
     if (role && typeof role === 'object' && !influencesOf(next).includes(role.influence)) next = withInfluence(next, role.influence, unit);
   }
   const blank = newPoint(visit, entering);
-  const read = intake.points.map((point) => ({ ...point, state: entering, standard: point.standard ?? blank.standard, setting_uncertainty: point.setting_uncertainty ?? blank.setting_uncertainty }));
+  const statesRead = intake.columns.some((column) => column.role === 'state');
+  const read = intake.points.map((point) => ({ ...point, state: statesRead ? point.state : entering, standard: point.standard ?? blank.standard, setting_uncertainty: point.setting_uncertainty ?? blank.setting_uncertainty }));
   return { ...next, points: replace ? read : [...pointsOf(visit), ...read] };
 }
 

@@ -1,0 +1,139 @@
+// The shape: a polynomial at a click, or any list of terms, refused with the place of what is wrong.
+
+/** @import { Parts } from './store.js' */
+/** @import { Problem, Term, Visit } from './types.js' */
+import { useState } from 'preact/hooks';
+import { PanelFrame } from './panel.jsx';
+import { orientationOf } from './picture-range.js';
+import { refusal } from './store.js';
+import { influencesOf, withModel } from './visit.js';
+
+const NAMES = ['a constant', 'straight line', 'quadratic', 'cubic', 'degree 4', 'degree 5'];
+
+/** @param {Parts & { onClose: () => void }} props */
+export function ShapePanel({ core, state, dispatch, onClose }) {
+  const { visit, report } = state;
+  const variable = orientationOf(visit) === 'indication_from_reference' ? 'x' : 'y';
+  const present = termsText(visit.model?.terms);
+  const [draft, setDraft] = useState(/** @type {string|null} */ (null));
+  const [wrong, setWrong] = useState(/** @type {{ text: string, problem: Problem }|null} */ (null));
+  const attempt = (/** @type {Term[]} */ terms, /** @type {string} */ text) => {
+    const changed = withModel(visit, { terms });
+    const problem = troubleWith(core, changed);
+    setWrong(problem && { text, problem });
+    if (problem) return;
+    dispatch({ type: 'edit', visit: changed, what: 'shape' });
+    setDraft(null);
+  };
+  const names = [variable, ...influencesOf(visit)];
+  return (
+    <PanelFrame title="Shape" onClose={onClose}>
+      <p>The curves that are thought of. More terms bend more and need more points. At present: <strong>{report?.fit?.formula ?? present}</strong></p>
+      <div class="buttons">
+        {NAMES.map((name, degree) => {
+          const terms = polynomial(variable, degree);
+          return <button key={name} type="button" aria-pressed={present === terms.join(', ')} onClick={() => attempt(terms, terms.join(', '))}>{name}</button>;
+        })}
+      </div>
+      <form
+        class="field"
+        onSubmit={(event) => {
+          event.preventDefault();
+          const text = draft ?? present;
+          attempt(splitTerms(text), text);
+        }}
+      >
+        <label for="terms">Terms, with commas between</label>
+        <textarea id="terms" rows={2} spellcheck={false} autocomplete="off" value={draft ?? present} aria-invalid={wrong ? 'true' : undefined} aria-describedby="terms-hint" onInput={(event) => setDraft(event.currentTarget.value)} />
+        <div id="terms-hint">
+          {wrong && <WrongTerms {...wrong} />}
+          <p class="hint">In {names.join(', ')}: for instance 1, {variable}, {variable}^2 · 1/{variable} · ln({variable}) · exp({variable}) · sqrt({variable}) · sin(2*pi*{variable}){names.length > 1 && ` · ${variable}*${names[1]}`}</p>
+        </div>
+        <button type="submit" disabled={draft === null || draft === present}>Use these terms</button>
+      </form>
+    </PanelFrame>
+  );
+}
+
+/**
+ * The text with the place of the error marked.
+ * @param {{ text: string, problem: Problem }} props
+ */
+function WrongTerms({ text, problem }) {
+  const index = Number(/^model\.terms\[(\d+)\]/.exec(problem.place)?.[1] ?? Number.NaN);
+  const term = splitTerms(text)[index];
+  const position = Number(problem.args.position ?? problem.args.column ?? Number.NaN);
+  const at = Number.isFinite(position) && typeof term === 'string' ? Math.max(0, Math.min(position - 1, term.length)) : null;
+  return (
+    <div class="trouble">
+      {typeof term === 'string' && <p class="term"><code>{at === null ? term : <>{term.slice(0, at)}<mark>{term.slice(at, at + 1) || ' '}</mark>{term.slice(at + 1)}</>}</code></p>}
+      <p>{problem.sentence} The shape stays as it was.</p>
+    </div>
+  );
+}
+
+/**
+ * What the core says against a shape; null where it can be used.
+ * @param {Parts['core']} core
+ * @param {Visit} visit
+ * @returns {Problem|null}
+ */
+function troubleWith(core, visit) {
+  try {
+    const appraisal = core.appraise(visit);
+    const { messages } = appraisal.outline();
+    appraisal.free();
+    return messages.find((message) => message.level === 'error' && message.place.startsWith('model.terms')) ?? null;
+  } catch (problem) {
+    return { level: 'error', code: '', args: {}, place: 'model.terms', sentence: refusal(problem).sentence };
+  }
+}
+
+/**
+ * @param {string} variable
+ * @param {number} degree
+ */
+function polynomial(variable, degree) {
+  return Array.from({ length: degree + 1 }, (_, power) => (power === 0 ? '1' : power === 1 ? variable : `${variable}^${power}`));
+}
+
+/** @param {Term[]|Term|undefined} terms */
+function termsText(terms) {
+  const list = Array.isArray(terms) ? terms : terms ? [terms] : [];
+  return list.map((term) => (typeof term === 'string' ? term : JSON.stringify(term))).join(', ');
+}
+
+/**
+ * At commas, semicolons and line ends outside parentheses; a shape object is kept as one.
+ * @param {string} text
+ * @returns {Term[]}
+ */
+function splitTerms(text) {
+  const pieces = [];
+  let depth = 0;
+  let piece = '';
+  for (const letter of text) {
+    if ('([{'.includes(letter)) depth += 1;
+    if (')]}'.includes(letter)) depth -= 1;
+    if (depth === 0 && ',;\n'.includes(letter)) {
+      pieces.push(piece.trim());
+      piece = '';
+    } else {
+      piece += letter;
+    }
+  }
+  return [...pieces, piece.trim()].filter((term) => term !== '').map(asTerm);
+}
+
+/**
+ * @param {string} text
+ * @returns {Term}
+ */
+function asTerm(text) {
+  if (!text.startsWith('{')) return text;
+  try {
+    return JSON.parse(text);
+  } catch {
+    return text;
+  }
+}
