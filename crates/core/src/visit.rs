@@ -523,8 +523,14 @@ impl Asked {
     /// The same as a reading with its particulars.
     pub fn to_reading(&self) -> Reading {
         match self {
-            Asked::Indications(values) => Reading { indications: values.clone(), ..Reading::default() },
-            Asked::One(value) => Reading { indications: vec![*value], ..Reading::default() },
+            Asked::Indications(values) => Reading {
+                indications: values.clone(),
+                ..Reading::default()
+            },
+            Asked::One(value) => Reading {
+                indications: vec![*value],
+                ..Reading::default()
+            },
             Asked::Reading(reading) => reading.clone(),
         }
     }
@@ -544,6 +550,9 @@ pub struct Reading {
     /// What was known about the value itself.
     #[serde(default)]
     pub known: Option<KnownValue>,
+    /// Known standard uncertainty of the mean of these indications, in the unit of the output; takes the place of σ²v/m.
+    #[serde(default)]
+    pub indication_uncertainty: Option<f64>,
 }
 
 /// A value known as a normal.

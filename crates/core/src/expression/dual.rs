@@ -19,7 +19,10 @@ impl Dual {
     }
 
     pub(super) fn variable(value: Dd) -> Dual {
-        Dual { value, slope: Some(Dd::ONE) }
+        Dual {
+            value,
+            slope: Some(Dd::ONE),
+        }
     }
 
     pub(super) fn value(self) -> Dd {
@@ -32,14 +35,20 @@ impl Dual {
 
     /// The chain rule: `value` of the outer function, and its derivative times the inner slope where there is one.
     fn chain(self, value: Dd, derivative: impl FnOnce() -> Dd) -> Dual {
-        Dual { value, slope: self.slope.map(|slope| derivative() * slope) }
+        Dual {
+            value,
+            slope: self.slope.map(|slope| derivative() * slope),
+        }
     }
 
     /// The quotient rule in the form (u′ − (u/v)·v′)/v.
     fn divided_by(self, other: Dual) -> Dual {
         let value = self.value / other.value;
         let right = other.slope.map(|slope| -(value * slope));
-        Dual { value, slope: sum_of_slopes(self.slope, right).map(|slope| slope / other.value) }
+        Dual {
+            value,
+            slope: sum_of_slopes(self.slope, right).map(|slope| slope / other.value),
+        }
     }
 
     pub(super) fn power(self, exponent: Dd) -> Dual {
@@ -55,7 +64,9 @@ impl Dual {
         let x = self.value;
         match function {
             Function::Ln => self.chain(elementary::ln(x), || Dd::ONE / x),
-            Function::Log10 => self.chain(elementary::log10(x), || Dd::ONE / (x * elementary::LN_10)),
+            Function::Log10 => {
+                self.chain(elementary::log10(x), || Dd::ONE / (x * elementary::LN_10))
+            }
             Function::Exp => {
                 let value = elementary::exp(x);
                 self.chain(value, || value)
@@ -103,14 +114,20 @@ fn sum_of_slopes(a: Option<Dd>, b: Option<Dd>) -> Option<Dd> {
 impl Neg for Dual {
     type Output = Dual;
     fn neg(self) -> Dual {
-        Dual { value: -self.value, slope: self.slope.map(|slope| -slope) }
+        Dual {
+            value: -self.value,
+            slope: self.slope.map(|slope| -slope),
+        }
     }
 }
 
 impl Add for Dual {
     type Output = Dual;
     fn add(self, other: Dual) -> Dual {
-        Dual { value: self.value + other.value, slope: sum_of_slopes(self.slope, other.slope) }
+        Dual {
+            value: self.value + other.value,
+            slope: sum_of_slopes(self.slope, other.slope),
+        }
     }
 }
 
@@ -126,7 +143,10 @@ impl Mul for Dual {
     fn mul(self, other: Dual) -> Dual {
         let left = self.slope.map(|slope| slope * other.value);
         let right = other.slope.map(|slope| self.value * slope);
-        Dual { value: self.value * other.value, slope: sum_of_slopes(left, right) }
+        Dual {
+            value: self.value * other.value,
+            slope: sum_of_slopes(left, right),
+        }
     }
 }
 
