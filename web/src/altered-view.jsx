@@ -3,6 +3,11 @@
 /** @import { Parts } from './store.js' */
 import { recover } from './commands.js';
 
+const TITLES = /** @type {Record<string, string>} */ ({
+  differs: 'The results in this file are not those of its data',
+  newer_program: 'This file was written by a newer program',
+});
+
 /** @param {Parts} props */
 export function AlteredView({ store, state }) {
   const opened = state.opened;
@@ -10,10 +15,10 @@ export function AlteredView({ store, state }) {
   const count = opened.visit?.points?.length ?? 0;
   return (
     <main class="altered">
-      <h1>{opened.outcome === 'differs' ? 'The results in this file are not those of its data' : 'This file is not as it was saved'}</h1>
+      <h1>{TITLES[opened.outcome] ?? 'This file is not as it was saved'}</h1>
       <p class="lead">{opened.sentence}</p>
       {opened.changed.length > 0 && <ul>{opened.changed.map((section) => <li key={section}>Changed: {section}</li>)}</ul>}
-      {opened.field && <p>First field that differs: <code>{opened.field}</code></p>}
+      {opened.field && <p>Place: <code>{opened.field}</code></p>}
       <p>No value is shown, since none could be trusted. Ask for the original file, or compare the digest on the signed record.</p>
       {count > 0 && <button type="button" class="primary" onClick={() => recover(store, opened)}>Recover the {count} points into a new sheet</button>}
     </main>

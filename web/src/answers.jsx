@@ -85,7 +85,7 @@ function FitSummary({ core, report }) {
   const { fit, units } = report;
   if (!fit) return null;
   const { interval } = fit.noise;
-  const from = interval ? `, between ${core.format_interval(interval[0], interval[1], units.response)}` : '';
+  const from = interval ? ` (${core.format_interval(interval[0], interval[1], units.response)})` : '';
   return (
     <>
       <p class="big">{fit.formula}</p>

@@ -243,7 +243,7 @@ export function replaceBy(core, store, visit, what, notice) {
  */
 function openLeaf(core, store, bytes, name) {
   const opened = core.open_bytes(bytes);
-  if (!isSound(opened.outcome)) return say(store, { level: 'error', sentence: `“${name}” was not opened. ${opened.sentence}`, more: opened.changed, recover: opened });
+  if (!isSound(opened)) return say(store, { level: 'error', sentence: `“${name}” was not opened. ${opened.sentence}`, more: opened.changed, recover: opened });
   if (!opened.visit) return say(store, { level: 'error', sentence: `“${name}” is a page without a visit: there is nothing in it to open.` });
   replaceBy(core, store, opened.visit, `leaf “${name}” opened`, { level: 'note', sentence: `“${name}” opened; ${outcomeWords(opened.outcome)}.` });
 }

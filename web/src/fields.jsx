@@ -6,7 +6,7 @@ import { readPieces } from './cells.js';
 
 /**
  * A text, handed on when the field is left.
- * @param {{ label: string, value: string, onCommit: (text: string) => void, hint?: string, type?: string, rows?: number, list?: string[] }} props
+ * @param {{ label: string, value: string, onCommit: (text: string) => void, hint?: string, type?: 'text'|'date', rows?: number, list?: string[] }} props
  */
 export function TextField({ label, value, onCommit, hint, type = 'text', rows, list }) {
   const id = useId();

@@ -14,7 +14,7 @@ export function Heading({ core, store, state, dispatch }) {
       <div class="heading-words">
         <h1>{titleOf(visit)}</h1>
         <p class="subline">
-          {particulars(core, visit)}
+          <span title={particulars(core, visit)}>{particulars(core, visit)}</span>
           <button type="button" class="change" aria-label="Change instrument, standard and occasion" onClick={() => dispatch({ type: 'panel', panel: { name: 'details' } })}>change</button>
         </p>
       </div>

@@ -57,7 +57,7 @@ function opening(core, texts) {
   const opened = core.open_texts(texts);
   const mode = keptMode();
   const blank = blankVisit(today());
-  if (!isSound(opened.outcome)) return { visit: blank, origin: 'blank', stage: 'altered', opened, mode };
+  if (!isSound(opened)) return { visit: blank, origin: 'blank', stage: 'altered', opened, mode };
   if (!opened.visit) return { visit: blank, origin: 'blank', stage: 'sheet', opened: null, mode };
   return { visit: opened.visit, origin: core.digest(opened.visit), stage: 'leaf', opened, mode };
 }

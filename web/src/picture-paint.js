@@ -35,7 +35,7 @@ export function frameOf(context, scene, width, height) {
   const y = scaleLinear(scene.y, [height - MARGIN.bottom, MARGIN.top]);
   const count = Math.max(3, Math.floor(height / 48));
   const yTicks = y.ticks(count);
-  const plain = y.tickFormat(count, scene.signed ? '+' : undefined);
+  const plain = y.tickFormat(count, scene.signed ? '+f' : 'f');
   const yFormat = (/** @type {number} */ value) => (value === 0 ? '0' : plain(value));
   context.font = fontOf();
   const widest = max(yTicks, (tick) => context.measureText(yFormat(tick)).width) ?? 0;
@@ -52,6 +52,12 @@ export function frameOf(context, scene, width, height) {
 export function paint(context, scene, frame, inks) {
   context.clearRect(0, 0, frame.width, frame.height);
   context.font = fontOf();
+  if (scene.marks.length === 0 && scene.curve.length === 0) {
+    context.fillStyle = inks.muted;
+    context.textAlign = 'center';
+    context.fillText('Points appear here as they are entered.', frame.width / 2, frame.height / 2);
+    return;
+  }
   axes(context, scene, frame, inks);
   context.save();
   context.beginPath();
@@ -115,7 +121,7 @@ function axes(context, scene, frame, inks) {
   const right = width - MARGIN.right;
   const bottom = height - MARGIN.bottom;
   const count = Math.max(2, Math.floor((right - left) / 110));
-  const xFormat = x.tickFormat(count);
+  const xFormat = x.tickFormat(count, 'f');
   context.lineWidth = 1;
   context.textBaseline = 'middle';
   context.textAlign = 'right';

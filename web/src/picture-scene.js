@@ -3,7 +3,7 @@
 // Nothing is computed here but differences of the report's own columns: curve minus nominal (error), curve minus curve
 // (residuals).
 
-/** @import { Point, PointReport, State, Value, View } from './types.js' */
+/** @import { Curve, Orientation, Point, PointReport, State, Value, View } from './types.js' */
 import { extent } from 'd3-array';
 import { argumentOf, axisNames, orientationOf, responseOf } from './picture-range.js';
 import { pointsOf } from './visit.js';
@@ -28,8 +28,8 @@ const COLUMNS = 8;
  * @returns {View[]}
  */
 export function viewsOf({ drawn, report }) {
-  const hasNominal = (drawn && drawn.rows.length > 0 && !Number.isNaN(drawn.rows[7])) || (report?.points ?? []).some((row) => row.error !== null);
-  return hasNominal ? ['error', 'value', 'residuals', 'table'] : ['value', 'residuals', 'table'];
+  const hasError = drawn && drawn.rows.length > 0 ? !Number.isNaN(drawn.rows[7]) : (report?.points ?? []).some((row) => row.error !== null);
+  return hasError ? ['error', 'value', 'residuals', 'table'] : ['value', 'residuals', 'table'];
 }
 
 /**
@@ -49,11 +49,11 @@ export function sceneOf(state) {
   const { visit, report, drawn, asFoundCurve, answer } = state;
   const view = viewOf(state);
   const names = axisNames(visit);
-  const curve = drawn ? curvePlaces(drawn.rows, view) : [];
+  const orientation = orientationOf(visit);
+  const curve = drawn ? curvePlaces(drawn.rows, view, orientation) : [];
   const spanned = report?.fit?.spanned ?? null;
   const marks = (report?.points ?? []).flatMap((row) => markOf(state, row, view) ?? []);
-  const yUnit = orientationOf(visit) === 'indication_from_reference' ? outputUnit(visit) : (visit.instrument?.unit ?? '');
-  const xUnit = orientationOf(visit) === 'indication_from_reference' ? (visit.instrument?.unit ?? '') : outputUnit(visit);
+  const [xUnit, yUnit] = orientation === 'indication_from_reference' ? [visit.instrument?.unit ?? '', outputUnit(visit)] : [outputUnit(visit), visit.instrument?.unit ?? ''];
   return {
     view, curve, spanned, marks,
     x: [drawn?.first ?? 0, drawn?.last ?? 1],
@@ -61,7 +61,7 @@ export function sceneOf(state) {
     signed: view !== 'value' || names.response === 'correction',
     xLabel: withUnit(names.argument, xUnit),
     yLabel: withUnit({ error: 'error of indication', residuals: `${names.response} minus curve` }[/** @type {'error'} */ (view)] ?? names.response, yUnit),
-    earlier: asFoundCurve && view !== 'residuals' ? asFoundCurve.x.map((x, at) => ({ x, y: asFoundCurve.estimate[at] - (view === 'error' ? (asFoundCurve.nominal?.[at] ?? 0) : 0) })) : [],
+    earlier: asFoundCurve && view !== 'residuals' ? earlierPlaces(asFoundCurve, view, orientation) : [],
     plumb: answer.value?.value ? plumbOf(state, answer.value, curve, view) : null,
   };
 }
@@ -79,18 +79,39 @@ export function heightAt(curve, x) {
 }
 
 /**
+ * The curve at a place as an error of indication: indication minus nominal, whichever of the two the curve gives.
+ * @param {Orientation} orientation
+ * @param {number} estimate
+ * @param {number} nominal
+ */
+export function asError(orientation, estimate, nominal) {
+  return orientation === 'indication_from_reference' ? estimate - nominal : nominal - estimate;
+}
+
+/**
  * @param {Float64Array} rows
  * @param {View} view
+ * @param {Orientation} orientation
  * @returns {CurvePlace[]}
  */
-function curvePlaces(rows, view) {
+function curvePlaces(rows, view, orientation) {
   const places = [];
   for (let at = 0; at + COLUMNS <= rows.length; at += COLUMNS) {
     const [x, estimate, , lo, hi, newLo, newHi, nominal] = rows.subarray(at, at + COLUMNS);
-    const base = view === 'error' ? nominal : view === 'residuals' ? estimate : 0;
-    places.push({ x, y: estimate - base, lo: lo - base, hi: hi - base, newLo: newLo - base, newHi: newHi - base });
+    const seen = (/** @type {number} */ value) => (view === 'error' ? asError(orientation, value, nominal) : view === 'residuals' ? value - estimate : value);
+    places.push({ x, y: seen(estimate), lo: seen(lo), hi: seen(hi), newLo: seen(newLo), newHi: seen(newHi) });
   }
   return places.filter((place) => Number.isFinite(place.y));
+}
+
+/**
+ * @param {Curve} curve
+ * @param {View} view
+ * @param {Orientation} orientation
+ */
+function earlierPlaces(curve, view, orientation) {
+  const { x, estimate, nominal } = curve;
+  return x.map((place, at) => ({ x: place, y: view === 'error' && nominal ? asError(orientation, estimate[at], nominal[at]) : estimate[at] }));
 }
 
 /**

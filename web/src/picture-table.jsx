@@ -1,7 +1,9 @@
 // Everything that is visible in the picture, as figures.
 
 /** @import { Parts } from './store.js' */
+import { scaleLinear } from 'd3-scale';
 import { useMemo } from 'preact/hooks';
+import { asError } from './picture-scene.js';
 import { pointsOf } from './visit.js';
 
 const PLACES = 21;
@@ -26,11 +28,13 @@ export function PictureTable({ core, store, state }) {
 /** @param {{ core: Parts['core'], store: Parts['store'], report: Parts['state']['report'], drawn: Parts['state']['drawn'] }} props */
 function CurveFigures({ core, store, report, drawn }) {
   if (!report?.fit || !drawn) return <p>No curve yet.</p>;
-  const rows = chunks(store.curve(drawn.first, drawn.last, PLACES));
+  const places = scaleLinear([drawn.first, drawn.last], [0, 1]).ticks(PLACES);
+  const rows = chunks(store.curve(places[0], places[places.length - 1], places.length));
   const { argument, response, variable } = report.units;
   const hasError = rows.some((row) => !Number.isNaN(row[7]));
   const step = (drawn.last - drawn.first) / 500;
-  const [from, to] = report.fit.spanned;
+  const { orientation, spanned } = report.fit;
+  const [from, to] = spanned;
   return (
     <table class="figures">
       <caption>The curve{argument && `, ${variable} in ${argument}`}{response && `, the others in ${response}`}</caption>
@@ -39,7 +43,7 @@ function CurveFigures({ core, store, report, drawn }) {
         {rows.map(([x, estimate, , lo, hi, newLo, newHi, nominal]) => (
           <tr key={x}>
             <th scope="row">{core.format_to(x, step)}</th>
-            {hasError && <td>{core.format_value(estimate - nominal, (hi - lo) / 2, '')}</td>}
+            {hasError && <td>{core.format_value(asError(orientation, estimate, nominal), (hi - lo) / 2, '')}</td>}
             <td>{core.format_value(estimate, (hi - lo) / 2, '')}</td>
             <td>{core.format_interval(lo, hi, '')}</td>
             <td>{core.format_interval(newLo, newHi, '')}</td>

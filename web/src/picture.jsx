@@ -6,7 +6,7 @@
 import { useEffect, useMemo, useRef, useState } from 'preact/hooks';
 import { frameOf, inksOf, markNear, paint, paintReadOff } from './picture-paint.js';
 import { orientationOf } from './picture-range.js';
-import { heightAt, sceneOf, viewOf, viewsOf } from './picture-scene.js';
+import { asError, heightAt, sceneOf, viewOf, viewsOf } from './picture-scene.js';
 import { PictureTable } from './picture-table.jsx';
 import { percent } from './words.js';
 
@@ -110,7 +110,7 @@ function Legend({ state, view }) {
 
 /**
  * Size of the box on the screen, and a count that changes when the inks may have changed.
- * @param {import('preact').RefObject<HTMLDivElement>} box
+ * @param {import('preact').RefObject<HTMLDivElement|null>} box
  */
 function useSize(box) {
   const [size, setSize] = useState({ width: 0, height: 0 });
@@ -185,8 +185,8 @@ function readOffWords(core, store, { visit, report, drawn }, place) {
   const indication = core.format_interval(newLo, newHi, units.response);
   const curve = core.format_value(estimate, half, units.response);
   if (Number.isNaN(nominal)) return `at ${at}: ${curve}; a new one ${indication}`;
-  const names = orientationOf(visit) === 'indication_from_reference' ? 'shows' : 'gives';
-  return `at ${at}: error ${core.format_value(estimate - nominal, half, units.response)}; ${names} ${curve}, a new indication ${indication}`;
+  const error = core.format_value(asError(orientationOf(visit), estimate, nominal), half, units.response);
+  return `at ${at}: error ${error}; curve ${curve}, a new one ${indication}`;
 }
 
 /**

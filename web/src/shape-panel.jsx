@@ -16,11 +16,11 @@ export function ShapePanel({ core, state, dispatch, onClose }) {
   const variable = orientationOf(visit) === 'indication_from_reference' ? 'x' : 'y';
   const present = termsText(visit.model?.terms);
   const [draft, setDraft] = useState(/** @type {string|null} */ (null));
-  const [wrong, setWrong] = useState(/** @type {{ text: string, problem: Problem }|null} */ (null));
-  const attempt = (/** @type {Term[]} */ terms, /** @type {string} */ text) => {
+  const [wrong, setWrong] = useState(/** @type {Problem|null} */ (null));
+  const attempt = (/** @type {Term[]} */ terms) => {
     const changed = withModel(visit, { terms });
     const problem = troubleWith(core, changed);
-    setWrong(problem && { text, problem });
+    setWrong(problem);
     if (problem) return;
     dispatch({ type: 'edit', visit: changed, what: 'shape' });
     setDraft(null);
@@ -32,21 +32,20 @@ export function ShapePanel({ core, state, dispatch, onClose }) {
       <div class="buttons">
         {NAMES.map((name, degree) => {
           const terms = polynomial(variable, degree);
-          return <button key={name} type="button" aria-pressed={present === terms.join(', ')} onClick={() => attempt(terms, terms.join(', '))}>{name}</button>;
+          return <button key={name} type="button" aria-pressed={present === terms.join(', ')} onClick={() => attempt(terms)}>{name}</button>;
         })}
       </div>
       <form
         class="field"
         onSubmit={(event) => {
           event.preventDefault();
-          const text = draft ?? present;
-          attempt(splitTerms(text), text);
+          attempt(splitTerms(draft ?? present));
         }}
       >
         <label for="terms">Terms, with commas between</label>
         <textarea id="terms" rows={2} spellcheck={false} autocomplete="off" value={draft ?? present} aria-invalid={wrong ? 'true' : undefined} aria-describedby="terms-hint" onInput={(event) => setDraft(event.currentTarget.value)} />
         <div id="terms-hint">
-          {wrong && <WrongTerms {...wrong} />}
+          {wrong && <WrongTerms problem={wrong} />}
           <p class="hint">In {names.join(', ')}: for instance 1, {variable}, {variable}^2 · 1/{variable} · ln({variable}) · exp({variable}) · sqrt({variable}) · sin(2*pi*{variable}){names.length > 1 && ` · ${variable}*${names[1]}`}</p>
         </div>
         <button type="submit" disabled={draft === null || draft === present}>Use these terms</button>
@@ -57,16 +56,15 @@ export function ShapePanel({ core, state, dispatch, onClose }) {
 
 /**
  * The text with the place of the error marked.
- * @param {{ text: string, problem: Problem }} props
+ * @param {{ problem: Problem }} props
  */
-function WrongTerms({ text, problem }) {
-  const index = Number(/^model\.terms\[(\d+)\]/.exec(problem.place)?.[1] ?? Number.NaN);
-  const term = splitTerms(text)[index];
-  const position = Number(problem.args.position ?? problem.args.column ?? Number.NaN);
-  const at = Number.isFinite(position) && typeof term === 'string' ? Math.max(0, Math.min(position - 1, term.length)) : null;
+function WrongTerms({ problem }) {
+  const { term, position } = problem.args;
+  const letters = typeof term === 'string' ? [...term] : [];
+  const at = typeof position === 'number' ? position - 1 : null;
   return (
     <div class="trouble">
-      {typeof term === 'string' && <p class="term"><code>{at === null ? term : <>{term.slice(0, at)}<mark>{term.slice(at, at + 1) || ' '}</mark>{term.slice(at + 1)}</>}</code></p>}
+      {letters.length > 0 && at !== null && <p class="term"><code>{letters.slice(0, at).join('')}<mark>{letters[at] ?? ' '}</mark>{letters.slice(at + 1).join('')}</code></p>}
       <p>{problem.sentence} The shape stays as it was.</p>
     </div>
   );

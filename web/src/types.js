@@ -92,7 +92,7 @@
 /** @typedef {{ index: number, name: string, unit: string, role: Role, numbers: number }} Column */
 /** @typedef {{ code: string, column: number|null, sentence: string, choices: { label: string, option: Record<string, any> }[] }} Question */
 /** @typedef {{ columns: Column[], rows: string[][], points: Point[], problems: Problem[], questions: Question[], header: boolean }} Intake */
-/** @typedef {'identical'|'same'|'earlier_method'|'newer_program'|'differs'|'altered'} Outcome */
+/** @typedef {'blank'|'identical'|'same'|'earlier_method'|'newer_program'|'differs'|'altered'} Outcome */
 /** @typedef {{ visit: Visit|null, outcome: Outcome, sentence: string, changed: string[], field: string|null }} Opened */
 /** @typedef {{ style: string, shell: string, seal: string, visit: string, wasm: string, program: string }} Texts */
 

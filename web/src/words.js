@@ -1,6 +1,6 @@
 // Sentences about what is shown. Every number in them comes from the report or from the core's formatting.
 
-/** @import { Core, Outcome, Problem, Report, State, Value, Visit } from './types.js' */
+/** @import { Core, Opened, Outcome, Problem, Report, State, Value, Visit } from './types.js' */
 import { rowTrouble } from './cells.js';
 import { pointsOf } from './visit.js';
 
@@ -133,6 +133,7 @@ export const CAUTION = 'Results support, and do not replace, the judgement of a 
 /** What the outcome of opening means, in a few words. @param {Outcome} outcome */
 export function outcomeWords(outcome) {
   const words = {
+    blank: 'a page without a visit',
     identical: 'identical: recomputed from the data inside to the last bit',
     same: 'same: recomputed, equal within a billionth of the uncertainty',
     earlier_method: 'computed by an earlier method: recomputed here by the present one',
@@ -143,8 +144,9 @@ export function outcomeWords(outcome) {
   return words[outcome] ?? outcome;
 }
 
-/** Whether a value may be shown after this outcome. @param {Outcome} outcome */
-export function isSound(outcome) {
+/** Whether a value may be shown after opening. @param {Opened} opened */
+export function isSound({ outcome, field }) {
+  if (outcome === 'newer_program') return field === null;
   return outcome !== 'altered' && outcome !== 'differs';
 }
 
