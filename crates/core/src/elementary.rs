@@ -20,33 +20,57 @@ pub const PI: Dd = Dd::from_parts(std::f64::consts::PI, 1.224_646_799_147_353_2e
 pub const LN_10: Dd = Dd::from_parts(std::f64::consts::LN_10, -2.170_756_223_382_249_4e-16);
 
 /// ln 2 as an unevaluated sum of three doubles (OEIS A002162).
-const LN_2: [f64; 3] = [
-    std::f64::consts::LN_2,
-    2.319_046_813_846_299_6e-17,
-    5.707_708_438_416_212e-34,
-];
+const LN_2: [f64; 3] = [std::f64::consts::LN_2, 2.319_046_813_846_299_6e-17, 5.707_708_438_416_212e-34];
 /// π/2 as an unevaluated sum of three doubles (OEIS A019669).
-const HALF_PI: [f64; 3] = [
-    std::f64::consts::FRAC_PI_2,
-    6.123_233_995_736_766e-17,
-    -1.497_384_904_859_169_8e-33,
-];
+const HALF_PI: [f64; 3] = [std::f64::consts::FRAC_PI_2, 6.123_233_995_736_766e-17, -1.497_384_904_859_169_8e-33];
 
 /// Beyond this many radians a sine says nothing about a measurement; `sin`, `cos` and `tan` give NaN there.
 pub const LARGEST_ANGLE: f64 = 1_073_741_824.0;
 
+/// 1/n! for n from 0, each as the nearest double-double.
+const INVERSE_FACTORIALS: [Dd; 31] = [
+    Dd::from_parts(1.0, 0.0),
+    Dd::from_parts(1.0, 0.0),
+    Dd::from_parts(0.5, 0.0),
+    Dd::from_parts(0.166_666_666_666_666_66, 9.251_858_538_542_97e-18),
+    Dd::from_parts(0.041_666_666_666_666_664, 2.312_964_634_635_742_7e-18),
+    Dd::from_parts(0.008_333_333_333_333_333, 1.156_482_317_317_871_4e-19),
+    Dd::from_parts(0.001_388_888_888_888_889, -5.300_543_954_373_577e-20),
+    Dd::from_parts(0.000_198_412_698_412_698_4, 1.720_955_829_342_070_5e-22),
+    Dd::from_parts(2.480_158_730_158_73e-5, 2.151_194_786_677_588_2e-23),
+    Dd::from_parts(2.755_731_922_398_589_3e-6, -1.858_393_274_046_472e-22),
+    Dd::from_parts(2.755_731_922_398_589e-7, 2.376_771_462_225_029_7e-23),
+    Dd::from_parts(2.505_210_838_544_172e-8, -1.448_814_070_935_912e-24),
+    Dd::from_parts(2.087_675_698_786_81e-9, -1.207_345_059_113_26e-25),
+    Dd::from_parts(1.605_904_383_682_161_3e-10, 1.258_529_458_875_209_8e-26),
+    Dd::from_parts(1.147_074_559_772_972_5e-11, 2.065_551_275_283_074_5e-28),
+    Dd::from_parts(7.647_163_731_819_816e-13, 7.038_728_777_334_53e-30),
+    Dd::from_parts(4.779_477_332_387_385e-14, 4.399_205_485_834_081e-31),
+    Dd::from_parts(2.811_457_254_345_520_6e-15, 1.650_884_273_086_143_3e-31),
+    Dd::from_parts(1.561_920_696_858_622_5e-16, 1.191_067_966_027_375_4e-32),
+    Dd::from_parts(8.220_635_246_624_33e-18, 2.214_189_411_960_426_5e-34),
+    Dd::from_parts(4.110_317_623_312_165e-19, 1.441_297_337_865_952_7e-36),
+    Dd::from_parts(1.957_294_106_339_126_3e-20, -1.364_350_383_008_790_8e-36),
+    Dd::from_parts(8.896_791_392_450_574e-22, -7.911_402_614_872_376e-38),
+    Dd::from_parts(3.868_170_170_630_684e-23, -8.843_177_655_482_344e-40),
+    Dd::from_parts(1.611_737_571_096_118_4e-24, -3.684_657_356_450_976_6e-41),
+    Dd::from_parts(6.446_950_284_384_474e-26, -1.933_040_423_370_346_5e-42),
+    Dd::from_parts(2.479_596_263_224_797_6e-27, -1.295_373_096_476_522_9e-43),
+    Dd::from_parts(9.183_689_863_795_546e-29, 1.430_315_039_678_732_2e-45),
+    Dd::from_parts(3.279_889_237_069_838e-30, 1.511_754_274_402_987_9e-46),
+    Dd::from_parts(1.130_996_288_644_771_6e-31, 1.049_801_541_295_950_6e-47),
+    Dd::from_parts(3.769_987_628_815_905_4e-33, 2.587_034_783_275_032_4e-49),
+];
+
 /// `x − k · constant` with the constant held to three doubles, so that the difference keeps its digits.
 fn reduce(x: Dd, k: f64, constant: &[f64; 3]) -> Dd {
-    x - Dd::from_product(k, constant[0])
-        - Dd::from_product(k, constant[1])
-        - Dd::from(k * constant[2])
+    x - Dd::from_product(k, constant[0]) - Dd::from_product(k, constant[1]) - Dd::from(k * constant[2])
 }
 
-/// `1 + t/d₁·(1 + t/d₂·(1 + …))`: a power series in nested form from the divisors that lead from term to term.
-fn nested_series(t: Dd, divisors: impl DoubleEndedIterator<Item = f64>) -> Dd {
-    divisors.rev().fold(Dd::ONE, |inner, divisor| {
-        Dd::ONE + t * inner / Dd::from(divisor)
-    })
+/// Σ tᵏ/n! over n = `first`, `first` + `step`, … `last` (at most 30), with k = 0, 1, 2, …, in nested form.
+fn factorial_series(t: Dd, first: usize, step: usize, last: usize) -> Dd {
+    let coefficients = INVERSE_FACTORIALS.iter().take(last + 1).skip(first).step_by(step);
+    coefficients.rev().fold(Dd::ZERO, |sum, &coefficient| sum * t + coefficient)
 }
 
 /// e to the power `x`, relative error below 1e-31 for results from 1e-290; ∞ above 709.78, 0 below −745.
@@ -64,7 +88,7 @@ pub fn exp(x: Dd) -> Dd {
     let k = float::round_half_to_even(x.hi() / LN_2[0]);
     let r = reduce(x, k, &LN_2).scale(1.0 / f64::from(1u32 << DOUBLINGS));
     // |r| ≤ 0.0109: after 14 terms the remainder is below 1e-37 of the sum.
-    let mut less_one = r * nested_series(r, (2..=14).map(f64::from));
+    let mut less_one = r * factorial_series(r, 1, 1, 14);
     for _ in 0..DOUBLINGS {
         less_one = less_one.scale(2.0) + less_one * less_one;
     }
@@ -103,9 +127,7 @@ fn ln_of_mantissa(m: Dd) -> Dd {
         // ln m = 2 artanh z = 2 (z + z³/3 + z⁵/5 + …) with |z| ≤ 1/15: 14 terms leave less than 1e-34 of the sum.
         let z = above_one / (m + Dd::ONE);
         let square = z * z;
-        let series = (0..14).rev().fold(Dd::ZERO, |sum, n| {
-            sum * square + Dd::ONE / Dd::from(f64::from(2 * n + 1))
-        });
+        let series = (0..14).rev().fold(Dd::ZERO, |sum, n| sum * square + Dd::ONE / Dd::from(f64::from(2 * n + 1)));
         return (z * series).scale(2.0);
     }
     let guess = Dd::from(float::ln(m.hi()));
@@ -117,11 +139,7 @@ fn ln_of_mantissa(m: Dd) -> Dd {
 /// The common logarithm, relative error below 1e-30; −∞ at zero, NaN below.
 pub fn log10(x: Dd) -> Dd {
     let natural = ln(x);
-    if natural.is_finite() {
-        natural / LN_10
-    } else {
-        natural
-    }
+    if natural.is_finite() { natural / LN_10 } else { natural }
 }
 
 /// `base` to a real power by exp(exponent · ln base), relative error below 1e-31·(1 + |exponent · ln base|).
@@ -136,11 +154,7 @@ pub fn pow(base: Dd, exponent: Dd) -> Dd {
         return Dd::ONE;
     }
     if base.is_zero() {
-        return Dd::from(if exponent.hi() > 0.0 {
-            0.0
-        } else {
-            f64::INFINITY
-        });
+        return Dd::from(if exponent.hi() > 0.0 { 0.0 } else { f64::INFINITY });
     }
     exp(exponent * ln(base))
 }
@@ -155,14 +169,8 @@ pub fn sin_cos(x: Dd) -> (Dd, Dd) {
     let r = reduce(x, k, &HALF_PI);
     let minus_square = -(r * r);
     // |r| ≤ 0.786: the terms r²⁹/29! and r³⁰/30! are below 1e-33.
-    let sine = r * nested_series(
-        minus_square,
-        (1..=14).map(|n| f64::from(2 * n * (2 * n + 1))),
-    );
-    let cosine = nested_series(
-        minus_square,
-        (1..=15).map(|n| f64::from(2 * n * (2 * n - 1))),
-    );
+    let sine = r * factorial_series(minus_square, 1, 2, 29);
+    let cosine = factorial_series(minus_square, 0, 2, 30);
     match (k as i64).rem_euclid(4) {
         0 => (sine, cosine),
         1 => (cosine, -sine),
@@ -194,33 +202,27 @@ mod tests {
     /// A decimal number of any length as a double-double; exponents as in `1.5e-3`.
     fn decimal(text: &str) -> Dd {
         let (mantissa, exponent) = text.split_once('e').unwrap_or((text, "0"));
-        let decimals = mantissa
-            .split_once('.')
-            .map_or(0, |(_, fraction)| fraction.len() as i32);
+        let decimals = mantissa.split_once('.').map_or(0, |(_, fraction)| fraction.len() as i32);
         let digits = mantissa.chars().filter_map(|c| c.to_digit(10));
-        let whole = digits.fold(Dd::ZERO, |sum, digit| {
-            sum * 10.0 + Dd::from(f64::from(digit))
-        });
+        let whole = digits.fold(Dd::ZERO, |sum, digit| sum * 10.0 + Dd::from(f64::from(digit)));
         let shift = exponent.parse::<i32>().unwrap() - decimals;
         let power = Dd::from(10.0).powi(shift.unsigned_abs());
-        let magnitude = if shift < 0 {
-            whole / power
-        } else {
-            whole * power
-        };
-        if mantissa.starts_with('-') {
-            -magnitude
-        } else {
-            magnitude
-        }
+        let magnitude = if shift < 0 { whole / power } else { whole * power };
+        if mantissa.starts_with('-') { -magnitude } else { magnitude }
     }
 
     fn assert_close(name: &str, found: Dd, expected: Dd, relative: f64) {
         let gap = (found - expected).abs().to_f64();
-        assert!(
-            gap <= relative * expected.abs().to_f64(),
-            "{name}: {found:?} against {expected:?}"
-        );
+        assert!(gap <= relative * expected.abs().to_f64(), "{name}: {found:?} against {expected:?}");
+    }
+
+    #[test]
+    fn each_inverse_factorial_is_its_predecessor_divided() {
+        assert_eq!(INVERSE_FACTORIALS[0], Dd::ONE);
+        for n in 1..INVERSE_FACTORIALS.len() {
+            let back = INVERSE_FACTORIALS[n] * n as f64;
+            assert_close(&format!("{n}/{n}!"), back, INVERSE_FACTORIALS[n - 1], 1e-31);
+        }
     }
 
     #[test]
@@ -244,11 +246,7 @@ mod tests {
             ("sin 1", sin(Dd::ONE), sin_1),
             ("cos 1", cos(Dd::ONE), cos_1),
             ("tan 1", tan(Dd::ONE), tan_1),
-            (
-                "square root of 2",
-                pow(Dd::from(2.0), Dd::from(0.5)),
-                sqrt_2,
-            ),
+            ("square root of 2", pow(Dd::from(2.0), Dd::from(0.5)), sqrt_2),
         ];
         for (name, found, expected) in cases {
             assert_close(name, found, decimal(expected), 3e-31);
@@ -262,86 +260,32 @@ mod tests {
         let cases: [(&str, Of, f64, &str); 16] = [
             ("exp", exp, 0.5, "1.6487212707001281468486507878141635717"),
             ("exp", exp, 1e-20, "1.0000000000000000000099999999999999995"),
-            (
-                "exp",
-                exp,
-                88.7,
-                "3.3259869802505790385953245233612742801e+38",
-            ),
-            (
-                "ln",
-                ln,
-                1.0 + 9.094_947_017_729_282e-13,
-                "9.094947017725146476087627994346924709e-13",
-            ),
+            ("exp", exp, 88.7, "3.3259869802505790385953245233612742801e+38"),
+            ("ln", ln, 1.0 + 9.094_947_017_729_282e-13, "9.094947017725146476087627994346924709e-13"),
             ("ln", ln, 0.9, "-0.10536051565782627655587821139138998213"),
             ("ln", ln, 1.125, "0.11778303565638345453879410947052170507"),
             ("ln", ln, 1e-120, "-276.31021115928548210355206121000029889"),
             ("ln", ln, 1e120, "276.31021115928548206216244290951790589"),
-            (
-                "log10",
-                log10,
-                3.0,
-                "0.4771212547196624372950279032551153092",
-            ),
-            (
-                "log10",
-                log10,
-                1e-7,
-                "-7.0000000000000000196526453297206160617",
-            ),
-            (
-                "sin",
-                sin,
-                std::f64::consts::PI,
-                "1.2246467991473531772260659322749979971e-16",
-            ),
+            ("log10", log10, 3.0, "0.4771212547196624372950279032551153092"),
+            ("log10", log10, 1e-7, "-7.0000000000000000196526453297206160617"),
+            ("sin", sin, std::f64::consts::PI, "1.2246467991473531772260659322749979971e-16"),
             ("sin", sin, 1e6, "-0.34999350217129295211765248678077146906"),
-            (
-                "sin",
-                sin,
-                -LARGEST_ANGLE,
-                "0.61732641504604217075421635716960693694",
-            ),
-            (
-                "cos",
-                cos,
-                std::f64::consts::FRAC_PI_2,
-                "6.1232339957367658861303296613750014646e-17",
-            ),
+            ("sin", sin, -LARGEST_ANGLE, "0.61732641504604217075421635716960693694"),
+            ("cos", cos, std::f64::consts::FRAC_PI_2, "6.1232339957367658861303296613750014646e-17"),
             ("cos", cos, 1e6, "0.93675212753314478693853253507491877571"),
-            (
-                "tan",
-                tan,
-                std::f64::consts::FRAC_PI_2,
-                "16331239353195369.755967737041528916531",
-            ),
+            ("tan", tan, std::f64::consts::FRAC_PI_2, "16331239353195369.755967737041528916531"),
         ];
         for (name, function, argument, expected) in cases {
-            assert_close(
-                &format!("{name} {argument}"),
-                function(Dd::from(argument)),
-                decimal(expected),
-                3e-31,
-            );
+            assert_close(&format!("{name} {argument}"), function(Dd::from(argument)), decimal(expected), 3e-31);
         }
         let powers = [
             (10.0, -0.3, "0.50118723362727229781381935734459561473"),
-            (
-                0.001,
-                2.7,
-                "0.0000000079432823472428057201972024636748702203",
-            ),
+            (0.001, 2.7, "0.0000000079432823472428057201972024636748702203"),
             (12345.678, 0.1, "2.565378759205919554957028013011741245"),
         ];
         for (base, exponent, expected) in powers {
             let found = pow(Dd::from(base), Dd::from(exponent));
-            assert_close(
-                &format!("{base}^{exponent}"),
-                found,
-                decimal(expected),
-                2e-30,
-            );
+            assert_close(&format!("{base}^{exponent}"), found, decimal(expected), 2e-30);
         }
     }
 
@@ -355,10 +299,7 @@ mod tests {
             let (sine, cosine) = sin_cos(x);
             assert_close("sin² + cos²", sine * sine + cosine * cosine, Dd::ONE, 1e-30);
             let twice = sin(x.scale(2.0));
-            assert!(
-                (twice - (sine * cosine).scale(2.0)).abs().to_f64() < 1e-30,
-                "sin 2x at {x:?}"
-            );
+            assert!((twice - (sine * cosine).scale(2.0)).abs().to_f64() < 1e-30, "sin 2x at {x:?}");
         }
         for k in -120..=120 {
             let x = Dd::from(1.7) * pow(Dd::from(10.0), Dd::from(f64::from(k)));
@@ -378,12 +319,7 @@ mod tests {
         assert_eq!(ln(Dd::ONE), Dd::ZERO);
         assert_eq!(ln(Dd::ZERO).hi(), f64::NEG_INFINITY);
         // ln of the least subnormal double, −1074 ln 2.
-        assert_close(
-            "ln 2^-1074",
-            ln(of(5e-324)),
-            decimal("-744.44007192138126231410729844608163411"),
-            3e-31,
-        );
+        assert_close("ln 2^-1074", ln(of(5e-324)), decimal("-744.44007192138126231410729844608163411"), 3e-31);
         assert!(ln(of(-1.0)).hi().is_nan() && log10(of(-1.0)).hi().is_nan());
         assert_eq!(log10(Dd::ZERO).hi(), f64::NEG_INFINITY);
         assert_eq!(pow(Dd::ZERO, of(0.3)), Dd::ZERO);

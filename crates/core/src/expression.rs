@@ -121,35 +121,21 @@ impl Expression {
     ///
     /// # Errors
     /// A typed error with the place of the first thing that is no part of the notation of `TERMS.md`.
-    pub fn parse(
-        text: &str,
-        variable: &str,
-        influences: &[String],
-    ) -> Result<Expression, TermError> {
+    pub fn parse(text: &str, variable: &str, influences: &[String]) -> Result<Expression, TermError> {
         let root = parse::parse(text, variable, influences)?;
-        Ok(Expression {
-            root,
-            variable: variable.to_owned(),
-            influences: influences.to_vec(),
-        })
+        Ok(Expression { root, variable: variable.to_owned(), influences: influences.to_vec() })
     }
 
     /// The value of the term, not finite where it is undefined. `influences` in the order given to `parse`; one that is
     /// missing counts as NaN.
     pub fn evaluate(&self, variable: f64, influences: &[f64]) -> Dd {
-        finite_or_not(
-            self.root
-                .evaluate(Dual::constant(Dd::from(variable)), influences)
-                .value(),
-        )
+        finite_or_not(self.root.evaluate(Dual::constant(Dd::from(variable)), influences).value())
     }
 
     /// The value of the term and its derivative by the variable; either is not finite where it is undefined. At the
     /// kink of `abs` the slope is the mean of both sides, zero.
     pub fn evaluate_with_slope(&self, variable: f64, influences: &[f64]) -> (Dd, Dd) {
-        let result = self
-            .root
-            .evaluate(Dual::variable(Dd::from(variable)), influences);
+        let result = self.root.evaluate(Dual::variable(Dd::from(variable)), influences);
         (finite_or_not(result.value()), finite_or_not(result.slope()))
     }
 
@@ -170,9 +156,7 @@ impl Expression {
 
     /// The influence quantities that occur, by their place in the list given to `parse`, rising.
     pub fn influence_indices(&self) -> Vec<usize> {
-        (0..self.influences.len())
-            .filter(|&i| self.root.any(&|node| *node == Node::Influence(i)))
-            .collect()
+        (0..self.influences.len()).filter(|&i| self.root.any(&|node| *node == Node::Influence(i))).collect()
     }
 
     /// The term for people to read, with raised exponents and `·`: `x²`, `ln(x)`, `x·temperature`. Reads back as the
@@ -184,12 +168,7 @@ impl Expression {
     /// The unit of this term's coefficient: that of the response divided by that of the term, `mA/bar²`. Inside
     /// functions other than `sqrt` and `abs` the numerical value in the stated unit stands, which has no unit. Empty
     /// where it is one, or where it cannot be said, as in `x + x^2`.
-    pub fn unit(
-        &self,
-        response_unit: &str,
-        variable_unit: &str,
-        influence_units: &[String],
-    ) -> String {
+    pub fn unit(&self, response_unit: &str, variable_unit: &str, influence_units: &[String]) -> String {
         unit::of_coefficient(&self.root, response_unit, variable_unit, influence_units)
     }
 
@@ -198,9 +177,7 @@ impl Expression {
     pub fn takes_numerical_value(&self) -> bool {
         self.root.any(&|node| match node {
             Node::Call(Function::Sqrt | Function::Abs, _) => false,
-            Node::Call(_, argument) => {
-                argument.any(&|inner| matches!(inner, Node::Variable | Node::Influence(_)))
-            }
+            Node::Call(_, argument) => argument.any(&|inner| matches!(inner, Node::Variable | Node::Influence(_))),
             _ => false,
         })
     }
@@ -217,24 +194,21 @@ fn finite_or_not(value: Dd) -> Dd {
     }
 }
 
-/// `base` to a constant power: exact rules for integers and halves, exp and ln otherwise.
-fn power(base: Dd, exponent: Dd) -> Dd {
+/// Twice the exponent where that is a whole number, for the powers that need neither exp nor ln.
+fn halves(exponent: Dd) -> Option<f64> {
     let twice = exponent.scale(2.0);
-    let is_half_integer = twice.lo() == 0.0 && twice.hi() == twice.hi().trunc();
-    if !is_half_integer || twice.hi().abs() > 2.0 * LARGEST_EXPONENT {
+    let is_whole = twice.lo() == 0.0 && twice.hi() == twice.hi().trunc();
+    (is_whole && twice.hi().abs() <= 2.0 * (LARGEST_EXPONENT + 1.0)).then_some(twice.hi())
+}
+
+/// `base` to a constant power: repeated products for whole exponents and halves, exp and ln otherwise.
+fn power(base: Dd, exponent: Dd) -> Dd {
+    let Some(twice) = halves(exponent) else {
         return elementary::pow(base, exponent);
-    }
-    let magnitude = twice.hi().abs() as u32;
-    let raised = if magnitude.is_multiple_of(2) {
-        base.powi(magnitude / 2)
-    } else {
-        base.sqrt().powi(magnitude)
     };
-    if twice.hi() < 0.0 {
-        Dd::ONE / raised
-    } else {
-        raised
-    }
+    let magnitude = twice.abs() as u32;
+    let raised = if magnitude.is_multiple_of(2) { base.powi(magnitude / 2) } else { base.sqrt().powi(magnitude) };
+    if twice < 0.0 { Dd::ONE / raised } else { raised }
 }
 
 impl Node {
@@ -243,9 +217,7 @@ impl Node {
         condition(self)
             || match self {
                 Node::Number(_) | Node::Pi | Node::Variable | Node::Influence(_) => false,
-                Node::Negative(inner) | Node::Power(inner, _, _) | Node::Call(_, inner) => {
-                    inner.any(condition)
-                }
+                Node::Negative(inner) | Node::Power(inner, _, _) | Node::Call(_, inner) => inner.any(condition),
                 Node::Binary(_, left, right) => left.any(condition) || right.any(condition),
             }
     }
@@ -255,15 +227,10 @@ impl Node {
             Node::Number(value) => Dual::constant(Dd::from(*value)),
             Node::Pi => Dual::constant(elementary::PI),
             Node::Variable => variable,
-            Node::Influence(i) => {
-                Dual::constant(Dd::from(influences.get(*i).copied().unwrap_or(f64::NAN)))
-            }
+            Node::Influence(i) => Dual::constant(Dd::from(influences.get(*i).copied().unwrap_or(f64::NAN))),
             Node::Negative(inner) => -inner.evaluate(variable, influences),
             Node::Binary(operation, left, right) => {
-                let (left, right) = (
-                    left.evaluate(variable, influences),
-                    right.evaluate(variable, influences),
-                );
+                let (left, right) = (left.evaluate(variable, influences), right.evaluate(variable, influences));
                 match operation {
                     Operation::Add => left + right,
                     Operation::Subtract => left - right,
@@ -272,9 +239,7 @@ impl Node {
                 }
             }
             Node::Power(base, _, exponent) => base.evaluate(variable, influences).power(*exponent),
-            Node::Call(function, argument) => {
-                argument.evaluate(variable, influences).call(*function)
-            }
+            Node::Call(function, argument) => argument.evaluate(variable, influences).call(*function),
         }
     }
 
@@ -282,18 +247,13 @@ impl Node {
         match self {
             Node::Number(1.0) => Some(0),
             Node::Variable => Some(1),
-            Node::Binary(Operation::Multiply, left, right) => left
-                .monomial_degree()?
-                .checked_add(right.monomial_degree()?),
+            Node::Binary(Operation::Multiply, left, right) => {
+                left.monomial_degree()?.checked_add(right.monomial_degree()?)
+            }
             Node::Power(base, _, exponent) => {
                 let (k, rest) = (exponent.hi(), exponent.lo());
-                let is_natural =
-                    rest == 0.0 && k == k.trunc() && (0.0..=LARGEST_EXPONENT).contains(&k);
-                if is_natural {
-                    base.monomial_degree()?.checked_mul(k as u32)
-                } else {
-                    None
-                }
+                let is_natural = rest == 0.0 && k == k.trunc() && (0.0..=LARGEST_EXPONENT).contains(&k);
+                if is_natural { base.monomial_degree()?.checked_mul(k as u32) } else { None }
             }
             _ => None,
         }

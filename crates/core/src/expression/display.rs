@@ -14,28 +14,18 @@ enum Binding {
 }
 
 pub(super) fn display(root: &Node, variable: &str, influences: &[String]) -> String {
-    Writer {
-        variable,
-        influences,
-    }
-    .write(root)
+    Writer { variable, influences }.write(root)
 }
 
 /// A number in the shortest decimals that read back as the same double.
 fn number(value: f64) -> String {
     let plain = (1e-6..1e21).contains(&value) || value == 0.0;
-    if plain {
-        format!("{value}")
-    } else {
-        format!("{value:e}")
-    }
+    if plain { format!("{value}") } else { format!("{value:e}") }
 }
 
 fn binding(node: &Node) -> Binding {
     match node {
-        Node::Number(_) | Node::Pi | Node::Variable | Node::Influence(_) | Node::Call(..) => {
-            Binding::Atom
-        }
+        Node::Number(_) | Node::Pi | Node::Variable | Node::Influence(_) | Node::Call(..) => Binding::Atom,
         Node::Negative(_) => Binding::Negative,
         Node::Binary(Operation::Add | Operation::Subtract, ..) => Binding::Sum,
         Node::Binary(..) => Binding::Product,
@@ -58,11 +48,7 @@ impl Writer<'_> {
             Node::Negative(inner) => format!("−{}", self.at_least(Binding::Power, inner)),
             Node::Binary(operation, left, right) => self.binary(*operation, left, right),
             Node::Power(base, exponent, _) => {
-                format!(
-                    "{}{}",
-                    self.at_least(Binding::Atom, base),
-                    self.exponent(exponent)
-                )
+                format!("{}{}", self.at_least(Binding::Atom, base), self.exponent(exponent))
             }
             Node::Call(function, argument) => {
                 format!("{}({})", function.name(), self.write(argument))
@@ -77,21 +63,13 @@ impl Writer<'_> {
             Operation::Multiply => ("·", Binding::Negative, Binding::Power),
             Operation::Divide => ("/", Binding::Negative, Binding::Power),
         };
-        format!(
-            "{}{sign}{}",
-            self.at_least(of_left, left),
-            self.at_least(of_right, right)
-        )
+        format!("{}{sign}{}", self.at_least(of_left, left), self.at_least(of_right, right))
     }
 
     /// The node, in parentheses where it binds less tightly than its place asks for.
     fn at_least(&self, wanted: Binding, node: &Node) -> String {
         let text = self.write(node);
-        if binding(node) < wanted {
-            format!("({text})")
-        } else {
-            text
-        }
+        if binding(node) < wanted { format!("({text})") } else { text }
     }
 
     fn exponent(&self, exponent: &Node) -> String {

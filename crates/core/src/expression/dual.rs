@@ -1,6 +1,6 @@
 //! A value together with its derivative by the variable, carried through every operation (dual numbers).
 
-use super::{Function, power};
+use super::{Function, halves, power};
 use crate::dd::Dd;
 use crate::elementary;
 use std::ops::{Add, Div, Mul, Neg, Sub};
@@ -19,10 +19,7 @@ impl Dual {
     }
 
     pub(super) fn variable(value: Dd) -> Dual {
-        Dual {
-            value,
-            slope: Some(Dd::ONE),
-        }
+        Dual { value, slope: Some(Dd::ONE) }
     }
 
     pub(super) fn value(self) -> Dd {
@@ -35,28 +32,27 @@ impl Dual {
 
     /// The chain rule: `value` of the outer function, and its derivative times the inner slope where there is one.
     fn chain(self, value: Dd, derivative: impl FnOnce() -> Dd) -> Dual {
-        Dual {
-            value,
-            slope: self.slope.map(|slope| derivative() * slope),
-        }
+        Dual { value, slope: self.slope.map(|slope| derivative() * slope) }
     }
 
     /// The quotient rule in the form (u′ − (u/v)·v′)/v.
     fn divided_by(self, other: Dual) -> Dual {
         let value = self.value / other.value;
         let right = other.slope.map(|slope| -(value * slope));
-        Dual {
-            value,
-            slope: sum_of_slopes(self.slope, right).map(|slope| slope / other.value),
-        }
+        Dual { value, slope: sum_of_slopes(self.slope, right).map(|slope| slope / other.value) }
     }
 
     pub(super) fn power(self, exponent: Dd) -> Dual {
-        self.chain(power(self.value, exponent), || {
+        let value = power(self.value, exponent);
+        self.chain(value, || {
             if exponent.is_zero() {
-                return Dd::ZERO;
+                Dd::ZERO
+            } else if halves(exponent).is_some() || self.value.is_zero() {
+                exponent * power(self.value, exponent - Dd::ONE)
+            } else {
+                // Saves a second exp and ln where those were needed for the value.
+                exponent * value / self.value
             }
-            exponent * power(self.value, exponent - Dd::ONE)
         })
     }
 
@@ -64,9 +60,7 @@ impl Dual {
         let x = self.value;
         match function {
             Function::Ln => self.chain(elementary::ln(x), || Dd::ONE / x),
-            Function::Log10 => {
-                self.chain(elementary::log10(x), || Dd::ONE / (x * elementary::LN_10))
-            }
+            Function::Log10 => self.chain(elementary::log10(x), || Dd::ONE / (x * elementary::LN_10)),
             Function::Exp => {
                 let value = elementary::exp(x);
                 self.chain(value, || value)
@@ -114,20 +108,14 @@ fn sum_of_slopes(a: Option<Dd>, b: Option<Dd>) -> Option<Dd> {
 impl Neg for Dual {
     type Output = Dual;
     fn neg(self) -> Dual {
-        Dual {
-            value: -self.value,
-            slope: self.slope.map(|slope| -slope),
-        }
+        Dual { value: -self.value, slope: self.slope.map(|slope| -slope) }
     }
 }
 
 impl Add for Dual {
     type Output = Dual;
     fn add(self, other: Dual) -> Dual {
-        Dual {
-            value: self.value + other.value,
-            slope: sum_of_slopes(self.slope, other.slope),
-        }
+        Dual { value: self.value + other.value, slope: sum_of_slopes(self.slope, other.slope) }
     }
 }
 
@@ -143,10 +131,7 @@ impl Mul for Dual {
     fn mul(self, other: Dual) -> Dual {
         let left = self.slope.map(|slope| slope * other.value);
         let right = other.slope.map(|slope| self.value * slope);
-        Dual {
-            value: self.value * other.value,
-            slope: sum_of_slopes(left, right),
-        }
+        Dual { value: self.value * other.value, slope: sum_of_slopes(left, right) }
     }
 }
 

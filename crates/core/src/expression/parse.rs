@@ -1,9 +1,7 @@
 //! Reading a term: a scanner and a recursive descent over the grammar of `TERMS.md`, one function a rule.
 
 use super::dual::Dual;
-use super::{
-    Function, LARGEST_EXPONENT, MOST_CHARACTERS, MOST_NESTING, Node, Operation, TermError,
-};
+use super::{Function, LARGEST_EXPONENT, MOST_CHARACTERS, MOST_NESTING, Node, Operation, TermError};
 use crate::elementary;
 
 const SUPERSCRIPTS: [char; 10] = ['⁰', '¹', '²', '³', '⁴', '⁵', '⁶', '⁷', '⁸', '⁹'];
@@ -26,30 +24,19 @@ pub(super) fn parse(text: &str, variable: &str, influences: &[String]) -> Result
     };
     if parser.characters.iter().all(|c| c.is_whitespace()) {
         let sentence = format!("The term is empty: write for example {variable} or {variable}^2.");
-        return Err(TermError {
-            code: "empty_term",
-            position: 0,
-            sentence,
-        });
+        return Err(TermError { code: "empty_term", position: 0, sentence });
     }
     if parser.characters.len() > MOST_CHARACTERS {
         let what = format!("more than {MOST_CHARACTERS} characters stand");
-        return Err(parser.error_at(
-            "term_too_long",
-            MOST_CHARACTERS,
-            &what,
-            "split it into several terms",
-        ));
+        return Err(parser.error_at("term_too_long", MOST_CHARACTERS, &what, "split it into several terms"));
     }
     parser.advance()?;
     let root = parser.sum()?;
     match parser.token {
         Token::End => Ok(root),
-        Token::Close => Err(parser.error(
-            "unmatched_parenthesis",
-            "a closing parenthesis without an opening one stands",
-            "",
-        )),
+        Token::Close => {
+            Err(parser.error("unmatched_parenthesis", "a closing parenthesis without an opening one stands", ""))
+        }
         _ => Err(parser.missing_operator()),
     }
 }
@@ -92,8 +79,7 @@ fn continues_name(c: char) -> bool {
 
 /// Whether a name of an influence quantity can stand in a term.
 fn can_be_written(name: &str) -> bool {
-    name.chars().next().is_some_and(starts_name)
-        && !name.chars().any(|c| NEVER_IN_A_NAME.contains(c))
+    name.chars().next().is_some_and(starts_name) && !name.chars().any(|c| NEVER_IN_A_NAME.contains(c))
 }
 
 /// The grammar, from the loosest binding to the tightest.
@@ -144,11 +130,7 @@ impl Parser<'_> {
             Token::Raised(value) => {
                 let start = self.start;
                 let magnitude = Node::Number(value.abs());
-                let exponent = if value < 0.0 {
-                    Node::Negative(Box::new(magnitude))
-                } else {
-                    magnitude
-                };
+                let exponent = if value < 0.0 { Node::Negative(Box::new(magnitude)) } else { magnitude };
                 self.advance()?;
                 if matches!(self.token, Token::Raised(_) | Token::Caret) {
                     let remedy = "say with parentheses which comes first";
@@ -202,12 +184,7 @@ impl Parser<'_> {
             }
             Token::End => {
                 let what = "a parenthesis that is never closed stands";
-                Err(self.error_at(
-                    "unmatched_parenthesis",
-                    opened,
-                    what,
-                    "write ) where it ends",
-                ))
+                Err(self.error_at("unmatched_parenthesis", opened, what, "write ) where it ends"))
             }
             _ => Err(self.missing_operator()),
         }
@@ -219,17 +196,10 @@ impl Parser<'_> {
         let influence = self.influences.iter().position(|known| known == name);
         if influence.is_some() && (name == self.variable || name == "pi") {
             let what = format!("a name with two meanings, \"{name}\", stands");
-            return Err(self.error(
-                "ambiguous_name",
-                &what,
-                "rename the influence quantity of that name",
-            ));
+            return Err(self.error("ambiguous_name", &what, "rename the influence quantity of that name"));
         }
         self.advance()?;
-        if let Some(function) = Function::ALL
-            .into_iter()
-            .find(|function| function.name() == name)
-        {
+        if let Some(function) = Function::ALL.into_iter().find(|function| function.name() == name) {
             if self.token == Token::Open {
                 return Ok(Node::Call(function, Box::new(self.parenthesis()?)));
             }
@@ -258,16 +228,9 @@ impl Parser<'_> {
                 "write a power that varies as exp(… * ln(…))",
             ));
         }
-        let value = exponent
-            .evaluate(Dual::constant(elementary::PI), &[])
-            .value();
+        let value = exponent.evaluate(Dual::constant(elementary::PI), &[]).value();
         if !value.is_finite() {
-            return Err(self.error_at(
-                "exponent_undefined",
-                start,
-                "an exponent that has no value stands",
-                "",
-            ));
+            return Err(self.error_at("exponent_undefined", start, "an exponent that has no value stands", ""));
         }
         if value.hi().abs() > LARGEST_EXPONENT {
             let what = format!("an exponent larger than {LARGEST_EXPONENT} stands");
@@ -277,13 +240,9 @@ impl Parser<'_> {
     }
 
     /// Runs a rule one level further in, so that no text can exhaust the stack.
-    fn nested(
-        &mut self,
-        rule: impl FnOnce(&mut Self) -> Result<Node, TermError>,
-    ) -> Result<Node, TermError> {
+    fn nested(&mut self, rule: impl FnOnce(&mut Self) -> Result<Node, TermError>) -> Result<Node, TermError> {
         if self.nesting >= MOST_NESTING {
-            let what =
-                format!("more than {MOST_NESTING} parentheses or signs stand inside one another");
+            let what = format!("more than {MOST_NESTING} parentheses or signs stand inside one another");
             return Err(self.error("nested_too_deeply", &what, "write it with fewer"));
         }
         self.nesting += 1;
@@ -309,8 +268,7 @@ impl Parser<'_> {
             self.token = Token::End;
             return Ok(());
         };
-        let is_decimal =
-            c.is_ascii_digit() || (c == '.' && self.peek(1).is_some_and(|d| d.is_ascii_digit()));
+        let is_decimal = c.is_ascii_digit() || (c == '.' && self.peek(1).is_some_and(|d| d.is_ascii_digit()));
         self.token = if is_decimal {
             self.number()?
         } else if starts_name(c) {
@@ -333,11 +291,7 @@ impl Parser<'_> {
             '(' => Token::Open,
             ')' => Token::Close,
             ',' => {
-                return Err(self.error(
-                    "comma",
-                    "a comma stands",
-                    "decimals are written with a point",
-                ));
+                return Err(self.error("comma", "a comma stands", "decimals are written with a point"));
             }
             _ => {
                 let what = format!("the character \"{}\" has no meaning", c.escape_debug());
@@ -362,18 +316,11 @@ impl Parser<'_> {
                 self.skip_digits();
             }
         }
-        let digits: String = self
-            .characters
-            .iter()
-            .take(self.position)
-            .skip(self.start)
-            .collect();
+        let digits: String = self.characters.iter().take(self.position).skip(self.start).collect();
         let mantissa = digits.split(['e', 'E']).next().unwrap_or_default();
         let is_zero = mantissa.chars().all(|c| matches!(c, '0' | '.'));
         match digits.parse::<f64>() {
-            Ok(value) if value.is_finite() && (value.is_normal() || is_zero) => {
-                Ok(Token::Number(value))
-            }
+            Ok(value) if value.is_finite() && (value.is_normal() || is_zero) => Ok(Token::Number(value)),
             _ => {
                 let what = "a number that is too large or too small to be calculated with stands";
                 Err(self.error("number_out_of_range", what, ""))
@@ -394,43 +341,22 @@ impl Parser<'_> {
             self.position += 1;
         }
         let (first, mut value) = (self.position, 0.0);
-        while let Some(digit) = self
-            .peek(0)
-            .and_then(|c| SUPERSCRIPTS.iter().position(|&s| s == c))
-        {
+        while let Some(digit) = self.peek(0).and_then(|c| SUPERSCRIPTS.iter().position(|&s| s == c)) {
             value = value * 10.0 + digit as f64;
             self.position += 1;
         }
         if self.position == first {
-            return Err(self.error(
-                "operand_expected",
-                "a raised minus sign without raised digits stands",
-                "",
-            ));
+            return Err(self.error("operand_expected", "a raised minus sign without raised digits stands", ""));
         }
         Ok(Token::Raised(if negative { -value } else { value }))
     }
 
     /// The longest known name here, or else letters, digits and underscores. Known names may contain spaces.
     fn name(&mut self) -> Token {
-        let plain = self
-            .characters
-            .iter()
-            .skip(self.position)
-            .take_while(|&&c| continues_name(c))
-            .count();
-        let known = self
-            .influences
-            .iter()
-            .filter_map(|name| self.length_of(name))
-            .max();
+        let plain = self.characters.iter().skip(self.position).take_while(|&&c| continues_name(c)).count();
+        let known = self.influences.iter().filter_map(|name| self.length_of(name)).max();
         let length = known.unwrap_or_default().max(plain).max(1);
-        let name = self
-            .characters
-            .iter()
-            .skip(self.position)
-            .take(length)
-            .collect();
+        let name = self.characters.iter().skip(self.position).take(length).collect();
         self.position += length;
         Token::Name(name)
     }
@@ -438,12 +364,7 @@ impl Parser<'_> {
     /// The number of characters of a known name where it stands here as a whole.
     fn length_of(&self, name: &str) -> Option<usize> {
         let length = name.chars().count();
-        let here = self
-            .characters
-            .iter()
-            .skip(self.position)
-            .take(length)
-            .copied();
+        let here = self.characters.iter().skip(self.position).take(length).copied();
         let stands_here = can_be_written(name) && here.eq(name.chars());
         (stands_here && !self.peek(length).is_some_and(continues_name)).then_some(length)
     }
@@ -453,12 +374,7 @@ impl Parser<'_> {
 impl Parser<'_> {
     /// The term as repeated in a sentence.
     fn repeated(&self) -> String {
-        let mut text: String = self
-            .characters
-            .iter()
-            .take(MOST_REPEATED)
-            .flat_map(|c| c.escape_debug())
-            .collect();
+        let mut text: String = self.characters.iter().take(MOST_REPEATED).flat_map(|c| c.escape_debug()).collect();
         if self.characters.len() > MOST_REPEATED {
             text.push('…');
         }
@@ -473,15 +389,8 @@ impl Parser<'_> {
             "at its end".to_owned()
         };
         let colon = if remedy.is_empty() { "" } else { ": " };
-        let sentence = format!(
-            "In the term \"{}\" {what} {place}{colon}{remedy}.",
-            self.repeated()
-        );
-        TermError {
-            code,
-            position,
-            sentence,
-        }
+        let sentence = format!("In the term \"{}\" {what} {place}{colon}{remedy}.", self.repeated());
+        TermError { code, position, sentence }
     }
 
     fn error(&self, code: &'static str, what: &str, remedy: &str) -> TermError {
@@ -493,29 +402,18 @@ impl Parser<'_> {
         let before: String = self.characters.iter().take(self.start).collect();
         let after: String = self.characters.iter().skip(self.start).collect();
         let mended = format!("{}*{after}", before.trim_end());
-        let remedy = if mended.chars().count() <= MOST_REPEATED {
-            format!("write {mended}")
-        } else {
-            "write *".to_owned()
-        };
+        let remedy =
+            if mended.chars().count() <= MOST_REPEATED { format!("write {mended}") } else { "write *".to_owned() };
         self.error("operator_expected", "an operation sign is missing", &remedy)
     }
 
     fn unknown_name(&self, name: &str, start: usize) -> TermError {
         let mut known = vec![self.variable];
-        known.extend(
-            self.influences
-                .iter()
-                .map(String::as_str)
-                .filter(|name| can_be_written(name)),
-        );
+        known.extend(self.influences.iter().map(String::as_str).filter(|name| can_be_written(name)));
         known.push("pi");
         known.extend(Function::ALL.map(Function::name));
         let lower = name.to_lowercase();
-        let mut remedy = match known
-            .iter()
-            .find(|candidate| candidate.to_lowercase() == lower)
-        {
+        let mut remedy = match known.iter().find(|candidate| candidate.to_lowercase() == lower) {
             Some(candidate) => format!("write {candidate}"),
             None if lower == "log" => "write ln (natural) or log10 (common)".to_owned(),
             None => format!("known are {}", known.join(", ")),
@@ -526,11 +424,6 @@ impl Parser<'_> {
                 other.escape_debug()
             );
         }
-        self.error_at(
-            "unknown_name",
-            start,
-            &format!("the unknown name \"{name}\" stands"),
-            &remedy,
-        )
+        self.error_at("unknown_name", start, &format!("the unknown name \"{name}\" stands"), &remedy)
     }
 }

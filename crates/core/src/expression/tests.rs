@@ -1,9 +1,7 @@
 use super::*;
 
 fn influences() -> Vec<String> {
-    ["temperature", "supply pressure", "T", "T-air"]
-        .map(String::from)
-        .to_vec()
+    ["temperature", "supply pressure", "T", "T-air"].map(String::from).to_vec()
 }
 
 fn read(text: &str) -> Expression {
@@ -65,24 +63,9 @@ fn operations_bind_as_in_mathematics() {
 #[test]
 fn errors_name_the_place_and_the_remedy() {
     let cases = [
-        (
-            "x^^2",
-            2,
-            "operand_expected",
-            "a number or a name is expected at character 3.",
-        ),
-        (
-            "2x",
-            1,
-            "operator_expected",
-            "an operation sign is missing at character 2: write 2*x.",
-        ),
-        (
-            "x (1+x)",
-            2,
-            "operator_expected",
-            "an operation sign is missing at character 3: write x*(1+x).",
-        ),
+        ("x^^2", 2, "operand_expected", "a number or a name is expected at character 3."),
+        ("2x", 1, "operator_expected", "an operation sign is missing at character 2: write 2*x."),
+        ("x (1+x)", 2, "operator_expected", "an operation sign is missing at character 3: write x*(1+x)."),
         (
             "ln x",
             0,
@@ -95,38 +78,15 @@ fn errors_name_the_place_and_the_remedy() {
             "unmatched_parenthesis",
             "a parenthesis that is never closed stands at character 1: write ) where it ends.",
         ),
-        (
-            "x+1)",
-            3,
-            "unmatched_parenthesis",
-            "a closing parenthesis without an opening one stands at character 4.",
-        ),
-        (
-            "x+",
-            2,
-            "operand_expected",
-            "a number or a name is expected at its end.",
-        ),
-        (
-            "0,5*x",
-            1,
-            "comma",
-            "a comma stands at character 2: decimals are written with a point.",
-        ),
-        (
-            "x : 2",
-            2,
-            "unexpected_character",
-            "the character \":\" has no meaning at character 3.",
-        ),
+        ("x+1)", 3, "unmatched_parenthesis", "a closing parenthesis without an opening one stands at character 4."),
+        ("x+", 2, "operand_expected", "a number or a name is expected at its end."),
+        ("0,5*x", 1, "comma", "a comma stands at character 2: decimals are written with a point."),
+        ("x : 2", 2, "unexpected_character", "the character \":\" has no meaning at character 3."),
     ];
     for (text, position, code, sentence) in cases {
         let error = refused(text);
         let sentence = format!("In the term \"{text}\" {sentence}");
-        assert_eq!(
-            (error.position, error.code, error.sentence),
-            (position, code, sentence)
-        );
+        assert_eq!((error.position, error.code, error.sentence), (position, code, sentence));
     }
 }
 
@@ -153,12 +113,7 @@ fn what_is_no_term_is_refused_with_its_code() {
     ];
     for (text, code, position) in cases {
         let error = refused(text);
-        assert_eq!(
-            (error.code, error.position),
-            (code, position),
-            "{text}: {}",
-            error.sentence
-        );
+        assert_eq!((error.code, error.position), (code, position), "{text}: {}", error.sentence);
     }
     let unknown = refused("1 + q").sentence;
     assert!(
@@ -168,11 +123,7 @@ fn what_is_no_term_is_refused_with_its_code() {
         "{unknown}"
     );
     assert!(unknown.contains("\"T-air\""), "{unknown}");
-    assert!(
-        refused("log(x)")
-            .sentence
-            .contains("write ln (natural) or log10 (common)")
-    );
+    assert!(refused("log(x)").sentence.contains("write ln (natural) or log10 (common)"));
     assert!(refused("X").sentence.contains("write x"));
     let both = Expression::parse("x", "x", &["x".to_owned()]).unwrap_err();
     assert_eq!(both.code, "ambiguous_name");
@@ -185,10 +136,7 @@ fn long_and_deep_terms_are_refused_without_exhausting_the_stack() {
     assert_eq!(refused(&"x^".repeat(200)).code, "nested_too_deeply");
     assert_eq!(refused(&"(".repeat(1_000_000)).code, "term_too_long");
     assert_eq!(value(&format!("{}x", "x+".repeat(249)), 1.0), 250.0);
-    assert_eq!(
-        value(&format!("{}x{}", "(".repeat(49), ")".repeat(49)), 1.0),
-        1.0
-    );
+    assert_eq!(value(&format!("{}x{}", "(".repeat(49), ")".repeat(49)), 1.0), 1.0);
 }
 
 #[test]
@@ -199,12 +147,7 @@ fn values_and_slopes_are_known_to_double_double_digits() {
     let tenth = Dd::from_parts(0.1, 0.0);
     assert_eq!(dd("x^3", 0.1), tenth * tenth * tenth);
     assert!((dd("1/x", 3.0) * Dd::from(3.0) - Dd::ONE).abs().to_f64() < 1e-31);
-    assert!(
-        (dd("sqrt(x)", 3.0) * dd("sqrt(x)", 3.0) - Dd::from(3.0))
-            .abs()
-            .to_f64()
-            < 1e-30
-    );
+    assert!((dd("sqrt(x)", 3.0) * dd("sqrt(x)", 3.0) - Dd::from(3.0)).abs().to_f64() < 1e-30);
     let cases = [
         ("x^3", "3*x^2"),
         ("x^-2", "-2*x^-3"),
@@ -229,10 +172,7 @@ fn values_and_slopes_are_known_to_double_double_digits() {
             let expected = dd(slope, x);
             let (_, found) = read(text).evaluate_with_slope(x, &[20.0, 1.5, 300.0, 0.0]);
             let gap = (found - expected).abs().to_f64();
-            assert!(
-                gap <= 1e-29 * expected.abs().to_f64(),
-                "d/dx {text} at {x}: {found:?} against {expected:?}"
-            );
+            assert!(gap <= 1e-29 * expected.abs().to_f64(), "d/dx {text} at {x}: {found:?} against {expected:?}");
         }
     }
 }
@@ -255,15 +195,9 @@ fn undefined_is_not_finite_and_nothing_else_is() {
         ("x - x", f64::INFINITY),
     ] {
         let (with_slope, _) = read(text).evaluate_with_slope(x, &[]);
-        assert!(
-            !with_slope.to_f64().is_finite(),
-            "{text} at {x}: {with_slope:?}"
-        );
+        assert!(!with_slope.to_f64().is_finite(), "{text} at {x}: {with_slope:?}");
     }
-    assert!(
-        !read("x*T").evaluate(1.0, &[]).to_f64().is_finite(),
-        "a missing influence value"
-    );
+    assert!(!read("x*T").evaluate(1.0, &[]).to_f64().is_finite(), "a missing influence value");
     assert_eq!(value("x^0", 0.0), 1.0);
     assert_eq!(value("x^0.5", 0.0), 0.0);
     let slope = |text: &str, x: f64| read(text).evaluate_with_slope(x, &[0.0]).1.to_f64();
@@ -346,9 +280,7 @@ fn terms_know_their_kind() {
     assert!(read("2*pi").is_constant() && !read("T").is_constant() && !read("x").is_constant());
     assert!(read("T*x").depends_on_variable() && !read("T").depends_on_variable());
     assert_eq!(read("T*x + temperature/T").influence_indices(), [0, 2]);
-    assert!(
-        read("ln(x)").takes_numerical_value() && !read("sqrt(x)*abs(x)").takes_numerical_value()
-    );
+    assert!(read("ln(x)").takes_numerical_value() && !read("sqrt(x)*abs(x)").takes_numerical_value());
     assert!(!read("x*ln(2)").takes_numerical_value());
     assert_eq!(Expression::parse("y^2", "y", &[]).unwrap().display(), "y²");
 }
@@ -388,10 +320,7 @@ struct Draws(u64);
 
 impl Draws {
     fn below(&mut self, n: usize) -> usize {
-        self.0 = self
-            .0
-            .wrapping_mul(2_862_933_555_777_941_757)
-            .wrapping_add(3_037_000_493);
+        self.0 = self.0.wrapping_mul(2_862_933_555_777_941_757).wrapping_add(3_037_000_493);
         ((self.0 >> 33) as usize) % n
     }
 }
@@ -406,9 +335,7 @@ fn no_text_makes_the_parser_panic() {
     let mut draws = Draws(1);
     let (mut accepted, mut refusals) = (0, 0);
     for _ in 0..40_000 {
-        let text: String = (0..draws.below(7))
-            .filter_map(|_| pieces.get(draws.below(pieces.len())).copied())
-            .collect();
+        let text: String = (0..draws.below(7)).filter_map(|_| pieces.get(draws.below(pieces.len())).copied()).collect();
         match Expression::parse(&text, "x", &influences()) {
             Ok(term) => {
                 accepted += 1;
@@ -427,8 +354,5 @@ fn no_text_makes_the_parser_panic() {
             }
         }
     }
-    assert!(
-        accepted > 1000 && refusals > 1000,
-        "{accepted} read, {refusals} refused"
-    );
+    assert!(accepted > 1000 && refusals > 1000, "{accepted} read, {refusals} refused");
 }

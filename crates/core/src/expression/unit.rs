@@ -7,12 +7,7 @@ use std::collections::BTreeMap;
 /// Exponents by quantity: `None` is the variable, `Some(i)` an influence quantity.
 type Dimension = BTreeMap<Option<usize>, f64>;
 
-pub(super) fn of_coefficient(
-    root: &Node,
-    response: &str,
-    variable: &str,
-    influences: &[String],
-) -> String {
+pub(super) fn of_coefficient(root: &Node, response: &str, variable: &str, influences: &[String]) -> String {
     let Some(dimension) = dimension(root) else {
         return String::new();
     };
@@ -43,26 +38,18 @@ fn dimension(node: &Node) -> Option<Dimension> {
         Node::Negative(inner) | Node::Call(Function::Abs, inner) => dimension(inner),
         Node::Call(Function::Sqrt, inner) => dimension(inner).map(|inner| times(inner, 0.5)),
         Node::Call(..) => Some(Dimension::new()),
-        Node::Power(base, _, exponent) => {
-            dimension(base).map(|base| times(base, exponent.to_f64()))
-        }
+        Node::Power(base, _, exponent) => dimension(base).map(|base| times(base, exponent.to_f64())),
         Node::Binary(Operation::Add | Operation::Subtract, left, right) => {
             let (left, right) = (dimension(left)?, dimension(right)?);
             (left == right).then_some(left)
         }
-        Node::Binary(Operation::Multiply, left, right) => {
-            Some(product(dimension(left)?, dimension(right)?))
-        }
-        Node::Binary(Operation::Divide, left, right) => {
-            Some(product(dimension(left)?, times(dimension(right)?, -1.0)))
-        }
+        Node::Binary(Operation::Multiply, left, right) => Some(product(dimension(left)?, dimension(right)?)),
+        Node::Binary(Operation::Divide, left, right) => Some(product(dimension(left)?, times(dimension(right)?, -1.0))),
     }
 }
 
 fn times(mut dimension: Dimension, factor: f64) -> Dimension {
-    dimension
-        .values_mut()
-        .for_each(|exponent| *exponent *= factor);
+    dimension.values_mut().for_each(|exponent| *exponent *= factor);
     dimension.retain(|_, exponent| *exponent != 0.0);
     dimension
 }
@@ -78,19 +65,11 @@ fn product(mut left: Dimension, right: Dimension) -> Dimension {
 /// Units with their exponents as one text: `mA/(bar²·°C)`, `1/mm`.
 fn quotient(powers: &[(&str, f64)]) -> String {
     let side = |wanted: f64| -> Vec<String> {
-        let of_side = powers
-            .iter()
-            .filter(|(_, exponent)| exponent * wanted > 0.0);
-        of_side
-            .map(|(unit, exponent)| raised_unit(unit, exponent.abs()))
-            .collect()
+        let of_side = powers.iter().filter(|(_, exponent)| exponent * wanted > 0.0);
+        of_side.map(|(unit, exponent)| raised_unit(unit, exponent.abs())).collect()
     };
     let (above, below) = (side(1.0), side(-1.0));
-    let numerator = if above.is_empty() && !below.is_empty() {
-        "1".to_owned()
-    } else {
-        above.join("·")
-    };
+    let numerator = if above.is_empty() && !below.is_empty() { "1".to_owned() } else { above.join("·") };
     match below.as_slice() {
         [] => numerator,
         [one] if !one.contains(['/', '·', ' ']) || one.starts_with('(') => {
