@@ -20,8 +20,8 @@ use crate::prior::Prior;
 use crate::problem::{Level, Problem};
 use crate::reading::{Reader, Scope};
 use crate::report::{
-    At, Curve, Estimate, Fit, Interval, METHOD, NoiseReport, PointReport, Program, Report, SCHEMA,
-    TermReport, Units, Value,
+    At, Curve, Estimate, Fit, Interval, METHOD, NoiseReport, PointReport, Program, Report, SCHEMA, TermReport, Units,
+    Value,
 };
 use crate::shape::{Shape, TermList, formula};
 use crate::visit::{self, MOST_ROWS, Orientation, Place, Reading, State, Visit};
@@ -61,12 +61,7 @@ struct Fitted {
 
 /// Appraises a visit.
 pub fn appraise(visit: &Visit) -> Appraisal {
-    let used = |state| {
-        visit
-            .points
-            .iter()
-            .any(|p| observation::is_used(p) && p.state == state)
-    };
+    let used = |state| visit.points.iter().any(|p| observation::is_used(p) && p.state == state);
     match (used(State::AsFound), used(State::AsLeft)) {
         (true, true) => {
             let mut left = of_state(visit, State::AsLeft);
@@ -80,10 +75,7 @@ pub fn appraise(visit: &Visit) -> Appraisal {
 
 fn of_state(visit: &Visit, state: State) -> Appraisal {
     let names: Vec<String> = visit.instrument.influences.keys().cloned().collect();
-    let conditions = names
-        .iter()
-        .map(|n| visit.conditions.get(n).copied().unwrap_or(f64::NAN))
-        .collect();
+    let conditions = names.iter().map(|n| visit.conditions.get(n).copied().unwrap_or(f64::NAN)).collect();
     let mut messages = Vec::new();
     let nominal = Characteristic::of(&visit.instrument).unwrap_or_else(|problem| {
         messages.push(problem);
@@ -107,40 +99,26 @@ fn of_state(visit: &Visit, state: State) -> Appraisal {
     appraisal.say_of_points();
     appraisal.say_of_instrument();
     appraisal.say_of_noise();
-    appraisal
-        .messages
-        .extend(pending::messages(visit, &pending.0, pending.1));
-    appraisal
-        .messages
-        .sort_by_key(|m| std::cmp::Reverse(m.level));
+    appraisal.messages.extend(pending::messages(visit, &pending.0, pending.1));
+    appraisal.messages.sort_by_key(|m| std::cmp::Reverse(m.level));
     appraisal
 }
 
 fn coverage_of(visit: &Visit, messages: &mut Vec<Problem>) -> f64 {
     match visit.coverage {
         None => COVERAGE,
-        Some(p) if p >= 0.01 && p <= 0.999_999 => p,
+        Some(p) if (0.01..=0.999_999).contains(&p) => p,
         Some(p) => {
-            let sentence = format!(
-                "The coverage probability is {p}; it must lie between 0.01 and 0.999999. 0.95 is used."
-            );
-            messages.push(Problem::warning(
-                "coverage_out_of_range",
-                "coverage",
-                sentence,
-            ));
+            let sentence =
+                format!("The coverage probability is {p}; it must lie between 0.01 and 0.999999. 0.95 is used.");
+            messages.push(Problem::warning("coverage_out_of_range", "coverage", sentence));
             COVERAGE
         }
     }
 }
 
 /// Reads the shape, the noise and what was known before, and fits them to the rows of one state.
-fn fit(
-    visit: &Visit,
-    state: State,
-    names: &[String],
-    pending: &mut (Vec<String>, bool),
-) -> Result<Fitted, Problem> {
+fn fit(visit: &Visit, state: State, names: &[String], pending: &mut (Vec<String>, bool)) -> Result<Fitted, Problem> {
     if let Some(schema) = visit.schema.as_deref().filter(|s| *s != visit::SCHEMA) {
         let sentence = format!(
             "The visit says it is of the kind {schema}; this version reads {}: open it with a newer version.",
@@ -148,27 +126,16 @@ fn fit(
         );
         return Err(Problem::error("schema_unknown", "schema", sentence).with("schema", schema));
     }
-    let total: usize = visit
-        .points
-        .iter()
-        .map(|p| p.indication.as_ref().map_or(0, |i| i.values().len()))
-        .sum();
+    let total: usize = visit.points.iter().map(|p| p.indication.as_ref().map_or(0, |i| i.values().len())).sum();
     if total > MOST_ROWS {
         let sentence = format!(
             "The visit holds {total} indications; at most {MOST_ROWS} can be used: leave some out or split the visit."
         );
-        return Err(Problem::error("too_many_rows", "points", sentence)
-            .with("rows", total)
-            .with("most", MOST_ROWS));
+        return Err(Problem::error("too_many_rows", "points", sentence).with("rows", total).with("most", MOST_ROWS));
     }
     let orientation = visit.model.orientation;
     if orientation == Orientation::CorrectionFromIndication
-        && visit
-            .instrument
-            .output
-            .unit
-            .as_ref()
-            .is_some_and(|u| *u != visit.instrument.unit)
+        && visit.instrument.output.unit.as_ref().is_some_and(|u| *u != visit.instrument.unit)
     {
         return Err(Problem::error(
             "correction_units",
@@ -183,37 +150,17 @@ fn fit(
         .iter()
         .filter(|p| observation::is_used(p) && p.state == state)
         .filter_map(observation::pair)
-        .flat_map(|(x, ys)| {
-            ys.iter()
-                .map(move |&y| observation::argument(orientation, x, y))
-        })
+        .flat_map(|(x, ys)| ys.iter().map(move |&y| observation::argument(orientation, x, y)))
         .collect();
-    let spanned = arguments
-        .iter()
-        .fold([f64::INFINITY, f64::NEG_INFINITY], |s, &a| {
-            [s[0].min(a), s[1].max(a)]
-        });
+    let spanned = arguments.iter().fold([f64::INFINITY, f64::NEG_INFINITY], |s, &a| [s[0].min(a), s[1].max(a)]);
     let (growth, integrated) = Growth::of(visit, spanned[1] - spanned[0])?;
     pending.1 = integrated;
-    let rows = observation::observations(visit, state, names, &shape.influences_used(), &|x| {
-        growth.at(x)
-    })?;
-    let design = rows
-        .iter()
-        .map(|row| design_row(&shape, row, names, orientation))
-        .collect::<Result<Vec<_>, _>>()?;
+    let rows = observation::observations(visit, state, names, &shape.influences_used(), &|x| growth.at(x))?;
+    let design = rows.iter().map(|row| design_row(&shape, row, names, orientation)).collect::<Result<Vec<_>, _>>()?;
     let (prior, left) = Prior::of(&visit.model.known_before, &shape, sigma, &design)?;
     pending.0 = left;
     let posterior = posterior::fit(&rows, &design, &shape, sigma, &prior)?;
-    Ok(Fitted {
-        shape,
-        rows,
-        design,
-        growth,
-        sigma,
-        posterior,
-        spanned,
-    })
+    Ok(Fitted { shape, rows, design, growth, sigma, posterior, spanned })
 }
 
 /// The letter in which the terms are written.
@@ -236,21 +183,17 @@ fn design_row(
         None => Ok(basis),
         Some(column) => {
             let term = shape.terms()[column].as_str();
-            let influences: String = shape
-                .influences_used()
-                .iter()
-                .map(|&k| format!(", {} = {}", names[k], row.influences[k]))
-                .collect();
+            let influences: String =
+                shape.influences_used().iter().map(|&k| format!(", {} = {}", names[k], row.influences[k])).collect();
             let sentence = format!(
                 "The term {term} has no finite value at point {} ({} = {}{influences}): choose another term, or set the point aside.",
                 row.point + 1,
                 variable(orientation),
                 row.argument
             );
-            let place = format!("points[{}]", row.point);
-            Err(Problem::error("term_not_finite", place, sentence)
-                .with("term", term)
-                .with("point", row.point + 1))
+            let side = if orientation == Orientation::IndicationFromReference { "reference" } else { "indication" };
+            let place = format!("points[{}].{side}", row.point);
+            Err(Problem::error("term_not_finite", place, sentence).with("term", term).with("point", row.point + 1))
         }
     }
 }
@@ -269,11 +212,7 @@ impl Appraisal {
     pub fn outline(&self) -> Report {
         Report {
             schema: SCHEMA,
-            program: Program {
-                name: "bandleaf",
-                version: env!("CARGO_PKG_VERSION"),
-                method: METHOD,
-            },
+            program: Program { name: "bandleaf", version: env!("CARGO_PKG_VERSION"), method: METHOD },
             visit_digest: None,
             state: match self.state {
                 State::AsFound => "as_found",
@@ -283,31 +222,13 @@ impl Appraisal {
             units: self.units(),
             fit: self.fitted.as_ref().map(|f| self.fit_report(f)),
             curve: None,
-            at: self
-                .visit
-                .ask
-                .at
-                .iter()
-                .filter_map(|place| self.at(place))
-                .collect(),
-            readings: self
-                .visit
-                .ask
-                .readings
-                .iter()
-                .map(|asked| self.read(&asked.to_reading()))
-                .collect(),
+            at: self.visit.ask.at.iter().filter_map(|place| self.at(place)).collect(),
+            readings: self.visit.ask.readings.iter().map(|asked| self.read(&asked.to_reading())).collect(),
             points: self.points(),
             checks: self
                 .fitted
                 .iter()
-                .filter_map(|f| {
-                    checks::lack_of_fit(
-                        &f.rows,
-                        f.shape.columns(),
-                        f.posterior.residual_sum_of_squares,
-                    )
-                })
+                .filter_map(|f| checks::lack_of_fit(&f.rows, f.shape.columns(), f.posterior.residual_sum_of_squares))
                 .collect(),
             shapes: Vec::new(),
             conformity: None,
@@ -340,19 +261,15 @@ impl Appraisal {
             let (mean, new) = predictor.both(x, &self.conditions);
             let (interval, wide) = (mean.interval(self.coverage), new.interval(self.coverage));
             let should = nominal.map(|n| n.at(x));
-            if !interval.iter().chain(&wide).all(|e| e.is_finite())
-                || should.is_some_and(|n| !n.is_finite())
-            {
+            if !interval.iter().chain(&wide).all(|e| e.is_finite()) || should.is_some_and(|n| !n.is_finite()) {
                 continue;
             }
             curve.x.push(x);
             curve.estimate.push(mean.location());
             curve.curve_interval.push(interval);
             curve.indication_interval.push(wide);
-            curve.standard_uncertainty = curve
-                .standard_uncertainty
-                .zip(mean.standard_deviation())
-                .map(|(mut all, one)| {
+            curve.standard_uncertainty =
+                curve.standard_uncertainty.zip(mean.standard_deviation()).map(|(mut all, one)| {
                     all.push(one);
                     all
                 });
@@ -385,12 +302,7 @@ impl Appraisal {
     pub fn read(&self, reading: &Reading) -> Value {
         let refused = |problem: Problem| Value {
             indications: reading.indications.clone(),
-            mean_indication: reading
-                .indications
-                .first()
-                .copied()
-                .filter(|y| y.is_finite())
-                .unwrap_or(0.0),
+            mean_indication: reading.indications.first().copied().filter(|y| y.is_finite()).unwrap_or(0.0),
             value: None,
             linearised: None,
             solutions: Vec::new(),
@@ -399,19 +311,9 @@ impl Appraisal {
             messages: vec![problem],
         };
         let Some(fitted) = &self.fitted else {
-            let reason = self
-                .messages
-                .iter()
-                .find(|m| m.level == Level::Error)
-                .map_or("", |m| m.sentence.as_str());
-            let sentence = format!(
-                "There is no curve yet, so a reading cannot be turned into a value. {reason}"
-            );
-            return refused(Problem::error(
-                "no_curve",
-                "points",
-                sentence.trim_end().to_owned(),
-            ));
+            let reason = self.messages.iter().find(|m| m.level == Level::Error).map_or("", |m| m.sentence.as_str());
+            let sentence = format!("There is no curve yet, so a reading cannot be turned into a value. {reason}");
+            return refused(Problem::error("no_curve", "points", sentence.trim_end().to_owned()));
         };
         let mut influences = self.conditions.clone();
         for (k, name) in self.names.iter().enumerate() {
@@ -419,17 +321,11 @@ impl Appraisal {
                 influences[k] = value;
             }
         }
-        if let Some(&k) = fitted
-            .shape
-            .influences_used()
-            .iter()
-            .find(|&&k| !influences[k].is_finite())
-        {
+        if let Some(&k) = fitted.shape.influences_used().iter().find(|&&k| !influences[k].is_finite()) {
             let name = self.names[k].as_str();
             let sentence = format!("The curve depends on {name}: say what it is for this reading.");
             return refused(
-                Problem::error("influence_missing", format!("influences.{name}"), sentence)
-                    .with("name", name),
+                Problem::error("influence_missing", format!("influences.{name}"), sentence).with("name", name),
             );
         }
         let units = self.units();
@@ -444,13 +340,8 @@ impl Appraisal {
     }
 
     fn scope(&self, fitted: &Fitted) -> Scope {
-        let references = fitted
-            .rows
-            .iter()
-            .filter_map(|r| self.visit.points.get(r.point)?.reference);
-        let (low, high) = references.fold((f64::INFINITY, f64::NEG_INFINITY), |s, x| {
-            (s.0.min(x), s.1.max(x))
-        });
+        let references = fitted.rows.iter().filter_map(|r| self.visit.points.get(r.point)?.reference);
+        let (low, high) = references.fold((f64::INFINITY, f64::NEG_INFINITY), |s, x| (s.0.min(x), s.1.max(x)));
         let (below, above) = self.hard_limits();
         Scope {
             range: self.range().unwrap_or((low, high)),
@@ -469,54 +360,28 @@ impl Appraisal {
     /// What cannot occur; no limit where the two contradict each other.
     fn hard_limits(&self) -> (f64, f64) {
         let (below, above) = self.visit.instrument.hard_limits.unwrap_or((None, None));
-        let limits = (
-            below.unwrap_or(f64::NEG_INFINITY),
-            above.unwrap_or(f64::INFINITY),
-        );
-        if limits.0 < limits.1 {
-            limits
-        } else {
-            (f64::NEG_INFINITY, f64::INFINITY)
-        }
+        let limits = (below.unwrap_or(f64::NEG_INFINITY), above.unwrap_or(f64::INFINITY));
+        if limits.0 < limits.1 { limits } else { (f64::NEG_INFINITY, f64::INFINITY) }
     }
 
     fn units(&self) -> Units {
         let input = self.visit.instrument.unit.clone();
-        let output = self
-            .visit
-            .instrument
-            .output
-            .unit
-            .clone()
-            .unwrap_or_else(|| input.clone());
+        let output = self.visit.instrument.output.unit.clone().unwrap_or_else(|| input.clone());
         let (response, argument) = match self.visit.model.orientation {
             Orientation::IndicationFromReference => (output.clone(), input.clone()),
             _ => (input.clone(), output.clone()),
         };
-        Units {
-            input,
-            output,
-            response,
-            argument,
-            variable: variable(self.visit.model.orientation).to_owned(),
-        }
+        Units { input, output, response, argument, variable: variable(self.visit.model.orientation).to_owned() }
     }
 
     fn fit_report(&self, fitted: &Fitted) -> Fit {
         let (posterior, shape) = (&fitted.posterior, &fitted.shape);
         let p = shape.columns();
         let units = self.units();
-        let influence_units: Vec<String> = self
-            .names
-            .iter()
-            .map(|n| self.visit.instrument.influences[n].unit.clone())
-            .collect();
+        let influence_units: Vec<String> =
+            self.names.iter().map(|n| self.visit.instrument.influences[n].unit.clone()).collect();
         let coefficient_units = shape.units(&units.response, &units.argument, &influence_units);
-        let unit_row = |j: usize| -> Vec<Dd> {
-            (0..p)
-                .map(|k| if k == j { Dd::ONE } else { Dd::ZERO })
-                .collect()
-        };
+        let unit_row = |j: usize| -> Vec<Dd> { (0..p).map(|k| if k == j { Dd::ONE } else { Dd::ZERO }).collect() };
         let terms = (0..p)
             .map(|j| {
                 let mixture = Mixture::of_components(posterior, &unit_row(j));
@@ -535,17 +400,10 @@ impl Appraisal {
             _ => (Law::Normal, nalgebra::DMatrix::from_element(p, p, Dd::ZERO)),
         };
         let matrix = |factor: f64| -> Vec<Vec<f64>> {
-            (0..p)
-                .map(|i| {
-                    (0..p)
-                        .map(|j| (scale_matrix[(i, j)] * factor).to_f64())
-                        .collect()
-                })
-                .collect()
+            (0..p).map(|i| (0..p).map(|j| (scale_matrix[(i, j)] * factor).to_f64()).collect()).collect()
         };
         let diagnostics = self.all_diagnostics(fitted);
-        let left_out: Option<Vec<f64>> =
-            diagnostics.iter().map(|d| d.left_out_log_density).collect();
+        let left_out: Option<Vec<f64>> = diagnostics.iter().map(|d| d.left_out_log_density).collect();
         let (n, nu) = (fitted.rows.len(), law.degrees_of_freedom());
         Fit {
             orientation: match self.visit.model.orientation {
@@ -584,16 +442,8 @@ impl Appraisal {
 
     fn noise_report(&self, fitted: &Fitted) -> NoiseReport {
         let tail = (1.0 - self.coverage) / 2.0;
-        let noise = fitted
-            .posterior
-            .components
-            .first()
-            .map(|c| c.noise.to_f64());
-        let degrees = fitted
-            .posterior
-            .components
-            .first()
-            .and_then(|c| c.law.degrees_of_freedom());
+        let noise = fitted.posterior.components.first().map(|c| c.noise.to_f64());
+        let degrees = fitted.posterior.components.first().and_then(|c| c.law.degrees_of_freedom());
         let interval = noise.zip(degrees).map(|(s, nu)| {
             let limit = |p: f64| s * float::sqrt(nu / chi_squared_quantile(nu, p));
             [limit(1.0 - tail), limit(tail)]
@@ -626,26 +476,17 @@ impl Appraisal {
             }
         };
         let (mean, new) = fitted.predictor().both(x, &influences);
-        let finite = |m: &Mixture| {
-            m.parts
-                .iter()
-                .all(|p| p.location.is_finite() && p.scale.is_finite())
-        };
+        let finite = |m: &Mixture| m.parts.iter().all(|p| p.location.is_finite() && p.scale.is_finite());
         if !finite(&mean) || !finite(&new) {
             return None;
         }
         let unit = self.units().response;
         let inverted = self.visit.model.orientation == Orientation::IndicationFromReference;
-        let error = self
-            .nominal
-            .filter(|_| inverted)
-            .map(|n| n.at(x))
-            .filter(|n| n.is_finite())
-            .map(|n| {
-                let mut shifted = mean.clone();
-                shifted.parts.iter_mut().for_each(|part| part.location -= n);
-                self.estimate(&shifted, &unit)
-            });
+        let error = self.nominal.filter(|_| inverted).map(|n| n.at(x)).filter(|n| n.is_finite()).map(|n| {
+            let mut shifted = mean.clone();
+            shifted.parts.iter_mut().for_each(|part| part.location -= n);
+            self.estimate(&shifted, &unit)
+        });
         Some(At {
             x,
             curve: self.estimate(&mean, &unit),
@@ -663,11 +504,7 @@ impl Appraisal {
             scale: mixture.scale(),
             standard_uncertainty: mixture.standard_deviation(),
             interval,
-            display: display::value_with_uncertainty(
-                estimate,
-                0.5 * (interval[1] - interval[0]),
-                unit,
-            ),
+            display: display::value_with_uncertainty(estimate, 0.5 * (interval[1] - interval[0]), unit),
         }
     }
 
@@ -677,38 +514,24 @@ impl Appraisal {
             .iter()
             .zip(&fitted.design)
             .enumerate()
-            .filter_map(|(i, (row, basis))| {
-                diagnostics::of_row(&fitted.posterior, basis, row.response, i)
-            })
+            .filter_map(|(i, (row, basis))| diagnostics::of_row(&fitted.posterior, basis, row.response, i))
             .collect()
     }
 
     /// One entry for each indication of a complete point, in the order given.
     fn points(&self) -> Vec<PointReport> {
-        let diagnostics = self
-            .fitted
-            .as_ref()
-            .map(|f| self.all_diagnostics(f))
-            .unwrap_or_default();
-        let mut used = self
-            .fitted
-            .iter()
-            .flat_map(|f| f.rows.iter().enumerate())
-            .peekable();
+        let diagnostics = self.fitted.as_ref().map(|f| self.all_diagnostics(f)).unwrap_or_default();
+        let mut used = self.fitted.iter().flat_map(|f| f.rows.iter().enumerate()).peekable();
         let mut reports = Vec::new();
         for (index, point) in self.visit.points.iter().enumerate() {
             let Some((reference, values)) = observation::pair(point) else {
                 continue;
             };
             for (repeat, &indication) in values.iter().enumerate() {
-                let row = used
-                    .next_if(|(_, row)| row.point == index && row.repeat == repeat)
-                    .map(|(i, _)| i);
+                let row = used.next_if(|(_, row)| row.point == index && row.repeat == repeat).map(|(i, _)| i);
                 let mut report = self.point(index, repeat, reference, indication);
                 match (row, &self.fitted) {
-                    (Some(i), Some(fitted)) => {
-                        describe_used(&mut report, fitted, i, diagnostics.get(i), self.coverage)
-                    }
+                    (Some(i), Some(fitted)) => describe_used(&mut report, fitted, i, diagnostics.get(i), self.coverage),
                     (None, Some(fitted)) => self.describe_unused(&mut report, fitted, point),
                     _ => {}
                 }
@@ -719,10 +542,7 @@ impl Appraisal {
     }
 
     fn point(&self, point: usize, repeat: usize, reference: f64, indication: f64) -> PointReport {
-        let error = self
-            .nominal
-            .map(|n| (Dd::from(indication) - n.at(reference)).to_f64())
-            .filter(|e| e.is_finite());
+        let error = self.nominal.map(|n| (Dd::from(indication) - n.at(reference)).to_f64()).filter(|e| e.is_finite());
         let span = self.nominal.and_then(|n| n.output_span(self.range()));
         PointReport {
             point,
@@ -739,9 +559,7 @@ impl Appraisal {
             standard_uncertainty: None,
             expanded_uncertainty: None,
             error,
-            error_display: error.map_or_else(String::new, |e| {
-                display::error_of_indication(e, indication, reference)
-            }),
+            error_display: error.map_or_else(String::new, |e| display::error_of_indication(e, indication, reference)),
             error_percent_of_span: error.zip(span).map(|(e, s)| 100.0 * e / s),
         }
     }
@@ -753,14 +571,7 @@ impl Appraisal {
         let influences: Vec<f64> = self
             .names
             .iter()
-            .map(|n| {
-                point
-                    .influences
-                    .get(n)
-                    .or_else(|| self.visit.conditions.get(n))
-                    .copied()
-                    .unwrap_or(f64::NAN)
-            })
+            .map(|n| point.influences.get(n).or_else(|| self.visit.conditions.get(n)).copied().unwrap_or(f64::NAN))
             .collect();
         let response = observation::response(orientation, report.reference, report.indication);
         let (mean, new) = fitted.predictor().both(argument, &influences);
@@ -769,11 +580,7 @@ impl Appraisal {
             return;
         }
         report.residual = Some(residual.to_f64());
-        if new
-            .parts
-            .iter()
-            .all(|p| p.scale > 0.0 && p.scale.is_finite())
-        {
+        if new.parts.iter().all(|p| p.scale > 0.0 && p.scale.is_finite()) {
             report.left_out_log_density = Some(new.log_density(response)).filter(|d| d.is_finite());
             report.left_out_tail = Some(new.cdf(response.to_f64())).filter(|p| p.is_finite());
         }
@@ -790,43 +597,27 @@ impl Appraisal {
                 (Some(_), Some(i)) if i.values().is_empty() => "indication",
                 _ => continue,
             };
-            let place = format!(
-                "points[{index}].{}",
-                if missing == "indication" {
-                    missing
-                } else {
-                    "reference"
-                }
-            );
+            let place = format!("points[{index}].{}", if missing == "indication" { missing } else { "reference" });
             let sentence = format!("Point {number} has no {missing} and is left out: fill it in.");
-            self.messages
-                .push(Problem::warning("point_incomplete", place, sentence).with("point", number));
+            self.messages.push(Problem::warning("point_incomplete", place, sentence).with("point", number));
         }
     }
 
     fn say_of_instrument(&mut self) {
         if let (Some(given), None) = (self.visit.instrument.range, self.range()) {
-            let sentence = format!(
-                "The range from {} to {} is empty: the span of the points is used.",
-                given.0, given.1
-            );
-            self.messages.push(Problem::warning(
-                "range_empty",
-                "instrument.range",
-                sentence,
-            ));
+            let sentence =
+                format!("The range from {} to {} is empty: the span of the points is used.", given.0, given.1);
+            self.messages.push(Problem::warning("range_empty", "instrument.range", sentence));
+        }
+        if let Some((first, last)) = self.visit.instrument.range.filter(|(first, last)| first > last) {
+            let sentence = format!("The range is stated from {first} to {last}: it is read from {last} to {first}.");
+            self.messages.push(Problem::note("range_turned", "instrument.range", sentence));
         }
         if let Some((Some(below), Some(above))) = self.visit.instrument.hard_limits
             && below >= above
         {
-            let sentence = format!(
-                "The physical limits {below} and {above} contradict each other and are not used."
-            );
-            self.messages.push(Problem::warning(
-                "hard_limits_cross",
-                "instrument.hard_limits",
-                sentence,
-            ));
+            let sentence = format!("The physical limits {below} and {above} contradict each other and are not used.");
+            self.messages.push(Problem::warning("hard_limits_cross", "instrument.hard_limits", sentence));
         }
     }
 
@@ -837,14 +628,8 @@ impl Appraisal {
             return;
         };
         let mut said = Vec::new();
-        let greatest = fitted
-            .rows
-            .iter()
-            .map(|r| r.response.abs().to_f64())
-            .fold(0.0, f64::max);
-        if matches!(component.law, Law::StudentT(_))
-            && component.noise.to_f64() <= ROUNDING * greatest
-        {
+        let greatest = fitted.rows.iter().map(|r| r.response.abs().to_f64()).fold(0.0, f64::max);
+        if matches!(component.law, Law::StudentT(_)) && component.noise.to_f64() <= ROUNDING * greatest {
             said.push(Problem::warning(
                 "points_on_curve",
                 "points",
@@ -855,23 +640,14 @@ impl Appraisal {
             let sentence = format!(
                 "With {nu} degree(s) of freedom the standard deviation does not exist; intervals and scales are given instead: measure more points.",
             );
-            said.push(
-                Problem::note("no_standard_deviation", "points", sentence)
-                    .with("degrees_of_freedom", nu),
-            );
+            said.push(Problem::note("no_standard_deviation", "points", sentence).with("degrees_of_freedom", nu));
         }
         self.messages.extend(said);
     }
 }
 
 /// A row of the fit: its diagnostics and its error bar.
-fn describe_used(
-    report: &mut PointReport,
-    fitted: &Fitted,
-    index: usize,
-    row: Option<&RowDiagnostics>,
-    coverage: f64,
-) {
+fn describe_used(report: &mut PointReport, fitted: &Fitted, index: usize, row: Option<&RowDiagnostics>, coverage: f64) {
     report.used = true;
     let Some(component) = fitted.posterior.components.first() else {
         return;
@@ -894,11 +670,7 @@ fn describe_used(
 
 impl Fitted {
     fn predictor(&self) -> Predictor<'_> {
-        Predictor {
-            posterior: &self.posterior,
-            shape: &self.shape,
-            growth: self.growth,
-        }
+        Predictor { posterior: &self.posterior, shape: &self.shape, growth: self.growth }
     }
 }
 
@@ -908,13 +680,7 @@ pub fn spread(first: f64, last: f64, count: usize) -> Vec<f64> {
         0 => Vec::new(),
         1 => vec![first],
         _ => (0..count)
-            .map(|k| {
-                if k + 1 == count {
-                    last
-                } else {
-                    first + (last - first) * (k as f64 / (count - 1) as f64)
-                }
-            })
+            .map(|k| if k + 1 == count { last } else { first + (last - first) * (k as f64 / (count - 1) as f64) })
             .collect(),
     }
 }

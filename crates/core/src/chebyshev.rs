@@ -63,9 +63,8 @@ impl Nodes {
         std::array::from_fn(|j| {
             let half = |k: usize| if k == 0 || k == DEGREE { 0.5 } else { 1.0 };
             // values[k] stands at −cos(kπ/16) = cos((16 − k)π/16)
-            let sum: f64 = (0..=DEGREE)
-                .map(|k| half(k) * values[k] * self.cosines[(j * (DEGREE - k)) % (2 * DEGREE)])
-                .sum();
+            let sum: f64 =
+                (0..=DEGREE).map(|k| half(k) * values[k] * self.cosines[(j * (DEGREE - k)) % (2 * DEGREE)]).sum();
             sum * half(j) * 2.0 / DEGREE as f64
         })
     }
@@ -98,15 +97,7 @@ impl Panel {
         }
         integral[0] = -clenshaw(&integral, -1.0);
         let mass = clenshaw(&integral, 1.0);
-        Panel {
-            low,
-            high,
-            values,
-            coefficients,
-            integral,
-            before: 0.0,
-            mass,
-        }
+        Panel { low, high, values, coefficients, integral, before: 0.0, mass }
     }
 
     fn local(&self, x: f64) -> f64 {
@@ -123,9 +114,7 @@ impl Panel {
 
     /// Size of the last coefficients: what the interpolant still misses.
     fn tail(&self) -> f64 {
-        self.coefficients[DEGREE - 2..]
-            .iter()
-            .fold(0.0, |t, c| f64::max(t, c.abs()))
+        self.coefficients[DEGREE - 2..].iter().fold(0.0, |t, c| f64::max(t, c.abs()))
     }
 
     fn top(&self) -> f64 {
@@ -145,11 +134,8 @@ impl Piecewise {
     /// Interpolates `function` between the first and the last of `edges` (ascending); the edges tell where it changes.
     pub fn new(edges: &[f64], function: &dyn Fn(f64) -> f64) -> Piecewise {
         let nodes = Nodes::new();
-        let first: Vec<Panel> = edges
-            .windows(2)
-            .filter(|w| w[1] > w[0])
-            .map(|w| Panel::new(&nodes, w[0], w[1], function))
-            .collect();
+        let first: Vec<Panel> =
+            edges.windows(2).filter(|w| w[1] > w[0]).map(|w| Panel::new(&nodes, w[0], w[1], function)).collect();
         let whole = first.iter().map(|p| p.high - p.low).sum::<f64>();
         let mut top = first.iter().map(Panel::top).fold(0.0, f64::max);
         let mut mass: f64 = first.iter().map(|p| p.mass).sum();
@@ -204,19 +190,15 @@ impl Piecewise {
         match (self.panels.first(), self.panels.last()) {
             (Some(first), _) if x <= first.low => 0.0,
             (_, Some(last)) if x >= last.high => 1.0,
-            _ => self
-                .panel_at(x)
-                .map_or(0.0, |p| (p.before + p.mass_below(x)) / self.mass),
+            _ => self.panel_at(x).map_or(0.0, |p| (p.before + p.mass_below(x)) / self.mass),
         }
     }
 
     /// The place below which a share of the mass lies: Newton inside the panel, kept inside a bracket.
     pub fn quantile(&self, share: f64) -> f64 {
         let target = share * self.mass;
-        let index = self
-            .panels
-            .partition_point(|p| p.before + p.mass < target)
-            .min(self.panels.len().saturating_sub(1));
+        let index =
+            self.panels.partition_point(|p| p.before + p.mass < target).min(self.panels.len().saturating_sub(1));
         let Some(panel) = self.panels.get(index) else {
             return f64::NAN;
         };
@@ -255,10 +237,7 @@ impl Piecewise {
                 });
                 let c = nodes.coefficients(&values);
                 // ∫T_j over [−1, 1] is 2/(1 − j²) for even j, 0 for odd.
-                let sum: f64 = (0..=DEGREE)
-                    .step_by(2)
-                    .map(|j| c[j] * 2.0 / (1.0 - (j * j) as f64))
-                    .sum();
+                let sum: f64 = (0..=DEGREE).step_by(2).map(|j| c[j] * 2.0 / (1.0 - (j * j) as f64)).sum();
                 0.5 * (p.high - p.low) * sum
             })
             .sum();
@@ -295,11 +274,7 @@ mod tests {
         let p = Piecewise::new(&edges, &density);
         assert!((p.mass() - 1.0).abs() < 1e-11, "{}", p.mass());
         let q = p.quantile(0.975);
-        assert!(
-            ((q - m) / s - 1.959_963_984_540_054).abs() < 1e-9,
-            "{}",
-            (q - m) / s
-        );
+        assert!(((q - m) / s - 1.959_963_984_540_054).abs() < 1e-9, "{}", (q - m) / s);
         assert!((p.moment(m, 2) / (s * s) - 1.0).abs() < 1e-9);
         assert!((p.cdf(m) - 0.5).abs() < 1e-11);
     }
@@ -314,15 +289,8 @@ mod tests {
     #[test]
     fn a_heavy_tail_far_out() {
         // Cauchy over ±10⁶: mass (2/π)·atan(10⁶).
-        let p = Piecewise::new(&[-1e6, -10.0, 0.0, 10.0, 1e6], &|x| {
-            1.0 / (std::f64::consts::PI * (1.0 + x * x))
-        });
+        let p = Piecewise::new(&[-1e6, -10.0, 0.0, 10.0, 1e6], &|x| 1.0 / (std::f64::consts::PI * (1.0 + x * x)));
         let expected = 2.0 / std::f64::consts::PI * libm::atan(1e6);
-        assert!(
-            (p.mass() - expected).abs() < 1e-10,
-            "{} {}",
-            p.mass(),
-            expected
-        );
+        assert!((p.mass() - expected).abs() < 1e-10, "{} {}", p.mass(), expected);
     }
 }

@@ -13,18 +13,12 @@ use std::collections::BTreeMap;
 /// The classical lack-of-fit test of rows with the same argument and influence quantities; `None` without repeats, with
 /// too few places for the p coefficients, or where the rows have unequal variances.
 pub fn lack_of_fit(rows: &[Observation], coefficients: usize, residual_sum: Dd) -> Option<Check> {
-    if rows
-        .iter()
-        .any(|row| row.variance_ratio != 1.0 || row.own_uncertainty != 0.0)
-    {
+    if rows.iter().any(|row| row.variance_ratio != 1.0 || row.own_uncertainty != 0.0) {
         return None;
     }
     let mut groups: BTreeMap<Vec<u64>, Vec<Dd>> = BTreeMap::new();
     for row in rows {
-        let key = std::iter::once(row.argument)
-            .chain(row.influences.iter().copied())
-            .map(f64::to_bits)
-            .collect();
+        let key = std::iter::once(row.argument).chain(row.influences.iter().copied()).map(f64::to_bits).collect();
         groups.entry(key).or_default().push(row.response);
     }
     let (n, places) = (rows.len(), groups.len());
@@ -45,15 +39,9 @@ pub fn lack_of_fit(rows: &[Observation], coefficients: usize, residual_sum: Dd) 
             "The repeats agree with each other much better than with the curve: choose a richer shape, or look for a point that disagrees.",
         )
     } else if p < 0.05 {
-        (
-            "shape_doubtful",
-            "The repeats agree with each other better than with the curve: the shape may be too simple.",
-        )
+        ("shape_doubtful", "The repeats agree with each other better than with the curve: the shape may be too simple.")
     } else {
-        (
-            "shape_agrees",
-            "The curve passes the points as closely as repeats of one setting agree with each other.",
-        )
+        ("shape_agrees", "The curve passes the points as closely as repeats of one setting agree with each other.")
     };
     let args = [
         ("sum_of_squares_within", within.to_f64()),
@@ -64,10 +52,7 @@ pub fn lack_of_fit(rows: &[Observation], coefficients: usize, residual_sum: Dd) 
     Some(Check {
         check: "lack_of_fit",
         code,
-        args: args
-            .into_iter()
-            .map(|(name, value)| (name.to_owned(), Argument::from(value)))
-            .collect(),
+        args: args.into_iter().map(|(name, value)| (name.to_owned(), Argument::from(value))).collect(),
         statistic: Some(statistic),
         p: Some(p),
         sentence: sentence.to_owned(),

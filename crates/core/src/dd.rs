@@ -98,11 +98,7 @@ impl Dd {
 
     /// Absolute value.
     pub fn abs(self) -> Dd {
-        if self.hi < 0.0 || (self.hi == 0.0 && self.lo < 0.0) {
-            -self
-        } else {
-            self
-        }
+        if self.hi < 0.0 || (self.hi == 0.0 && self.lo < 0.0) { -self } else { self }
     }
 
     /// The square root; zero of zero, NaN of a negative number.
@@ -110,7 +106,7 @@ impl Dd {
         if self.hi == 0.0 {
             return Dd::ZERO;
         }
-        let x = libm::sqrt(self.hi);
+        let x = crate::float::sqrt(self.hi);
         if !x.is_finite() {
             return Dd { hi: x, lo: 0.0 };
         }
@@ -126,10 +122,7 @@ impl Dd {
 
     /// The product with a power of two (exact unless it leaves the range of doubles).
     pub fn scale(self, power_of_two: f64) -> Dd {
-        Dd {
-            hi: self.hi * power_of_two,
-            lo: self.lo * power_of_two,
-        }
+        Dd { hi: self.hi * power_of_two, lo: self.lo * power_of_two }
     }
 
     /// An integer power by repeated squaring; `x⁰ = 1`.
@@ -166,10 +159,7 @@ impl PartialOrd for Dd {
 impl Neg for Dd {
     type Output = Dd;
     fn neg(self) -> Dd {
-        Dd {
-            hi: -self.hi,
-            lo: -self.lo,
-        }
+        Dd { hi: -self.hi, lo: -self.lo }
     }
 }
 
@@ -274,10 +264,7 @@ mod tests {
     fn cancellation_keeps_what_a_double_loses() {
         let a = Dd::from_sum(1e16, 1.0);
         assert_eq!((a - Dd::from(1e16)).to_f64(), 1.0);
-        assert_eq!(
-            Dd::from(1.0 + f64::EPSILON).powi(12).hi(),
-            1.0 + 12.0 * f64::EPSILON
-        );
+        assert_eq!(Dd::from(1.0 + f64::EPSILON).powi(12).hi(), 1.0 + 12.0 * f64::EPSILON);
     }
 
     #[test]

@@ -32,12 +32,7 @@ pub struct RowDiagnostics {
 }
 
 /// The diagnostics of one row: its basis functions, its response and its index among the rows of the fit.
-pub fn of_row(
-    posterior: &Posterior,
-    basis: &[Dd],
-    response: Dd,
-    index: usize,
-) -> Option<RowDiagnostics> {
+pub fn of_row(posterior: &Posterior, basis: &[Dd], response: Dd, index: usize) -> Option<RowDiagnostics> {
     let [component] = posterior.components.as_slice() else {
         return None;
     };
@@ -46,9 +41,7 @@ pub fn of_row(
     let p = basis.len();
     let leverage: Dd = (0..p)
         .map(|k| {
-            let part: Dd = (0..=k)
-                .map(|j| basis[j] * posterior.inverse_triangle[(j, k)])
-                .sum();
+            let part: Dd = (0..=k).map(|j| basis[j] * posterior.inverse_triangle[(j, k)]).sum();
             let part = part / deviation;
             part * part
         })
@@ -77,10 +70,7 @@ pub fn of_row(
         Law::Normal => (Law::Normal, Dd::ONE),
         Law::StudentT(nu) if nu - 1.0 >= 1.0 => {
             let whole = component.noise * component.noise * nu;
-            (
-                Law::StudentT(nu - 1.0),
-                (whole - scaled * scaled / left) / Dd::from(nu - 1.0),
-            )
+            (Law::StudentT(nu - 1.0), (whole - scaled * scaled / left) / Dd::from(nu - 1.0))
         }
         Law::StudentT(_) => return Some(row),
     };
@@ -89,8 +79,7 @@ pub fn of_row(
     }
     let scale = (variance / left).sqrt() * deviation;
     let z = (residual / left / scale).to_f64();
-    row.left_out_log_density =
-        Some(law.log_density(z) - float::ln(scale.to_f64())).filter(|d| d.is_finite());
+    row.left_out_log_density = Some(law.log_density(z) - float::ln(scale.to_f64())).filter(|d| d.is_finite());
     row.left_out_tail = Some(law.cdf(z));
     Some(row)
 }

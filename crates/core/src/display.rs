@@ -28,24 +28,18 @@ struct Rounded {
 
 /// The exponent of a text like `1.25e-3`.
 fn exponent_of(text: &str) -> i32 {
-    text.split_once('e')
-        .and_then(|(_, exponent)| exponent.parse().ok())
-        .unwrap_or_default()
+    text.split_once('e').and_then(|(_, exponent)| exponent.parse().ok()).unwrap_or_default()
 }
 
 /// The digits of the mantissa of such a text.
 fn digits_of(text: &str) -> String {
-    text.chars()
-        .take_while(|c| *c != 'e')
-        .filter(char::is_ascii_digit)
-        .collect()
+    text.chars().take_while(|c| *c != 'e').filter(char::is_ascii_digit).collect()
 }
 
 /// Whether the mantissa of such a text is more than 5: the half itself goes to the even digit, zero.
 fn more_than_five(text: &str) -> bool {
     let digits = digits_of(text);
-    digits.as_str() > "5"
-        && (!digits.starts_with('5') || digits.bytes().skip(1).any(|digit| digit != b'0'))
+    digits.as_str() > "5" && (!digits.starts_with('5') || digits.bytes().skip(1).any(|digit| digit != b'0'))
 }
 
 /// The decimal place of the last digit when `value` is shown to so many significant digits; 0.0996 to two is 0.10.
@@ -73,11 +67,7 @@ impl Rounded {
             digits.extend((0..exponent_of(&text) - after_point - place).map(|_| '0'));
             digits
         };
-        Rounded {
-            negative: value < 0.0 && digits != "0",
-            digits,
-            place,
-        }
+        Rounded { negative: value < 0.0 && digits != "0", digits, place }
     }
 
     /// A finite number to its shortest decimals within so many significant digits.
@@ -124,14 +114,8 @@ impl Rounded {
 
 /// The power of ten to write outside for numbers that are shown together; 0 for none.
 fn common_factor(numbers: &[&Rounded]) -> i32 {
-    let leading = numbers
-        .iter()
-        .filter(|number| !number.is_zero())
-        .map(|number| number.exponent())
-        .max();
-    leading
-        .filter(|exponent| !PLAIN.contains(exponent))
-        .unwrap_or_default()
+    let leading = numbers.iter().filter(|number| !number.is_zero()).map(|number| number.exponent()).max();
+    leading.filter(|exponent| !PLAIN.contains(exponent)).unwrap_or_default()
 }
 
 /// An integer in raised digits: `²`, `⁻¹`.
@@ -147,20 +131,12 @@ pub(crate) fn raised(integer: &str) -> String {
 /// Numbers shown together, with their common power of ten and unit.
 fn assembled(text: &str, factor: i32, unit: &str) -> String {
     let unit = unit.trim();
-    let gap = if unit.is_empty() || matches!(unit, "°" | "′" | "″") {
-        ""
-    } else {
-        " "
-    };
+    let gap = if unit.is_empty() || matches!(unit, "°" | "′" | "″") { "" } else { " " };
     if factor == 0 {
         return format!("{text}{gap}{unit}");
     }
     let power = raised(&factor.to_string());
-    if text.contains(' ') {
-        format!("({text})×10{power}{gap}{unit}")
-    } else {
-        format!("{text}×10{power}{gap}{unit}")
-    }
+    if text.contains(' ') { format!("({text})×10{power}{gap}{unit}") } else { format!("{text}×10{power}{gap}{unit}") }
 }
 
 /// What stands for a number that is not finite.
@@ -204,16 +180,9 @@ pub fn value_with_uncertainty(value: f64, expanded: f64, unit: &str) -> String {
         let value = alone(&rounded_like(value, f64::NAN), unit);
         return format!("{value}, uncertainty not known");
     }
-    let (value, uncertainty) = (
-        rounded_like(value, expanded),
-        rounded_like(expanded, expanded),
-    );
+    let (value, uncertainty) = (rounded_like(value, expanded), rounded_like(expanded, expanded));
     let factor = common_factor(&[&value, &uncertainty]);
-    assembled(
-        &format!("{} ± {}", value.text(factor), uncertainty.text(factor)),
-        factor,
-        unit,
-    )
+    assembled(&format!("{} ± {}", value.text(factor), uncertainty.text(factor)), factor, unit)
 }
 
 /// `1709.1 to 1713.3 mm`: an interval, its ends rounded to two significant digits of half its width. An end that is not
@@ -225,17 +194,11 @@ pub fn interval(low: f64, high: f64, unit: &str) -> String {
             let half = 0.5 * high - 0.5 * low;
             let (low, high) = (rounded_like(low, half), rounded_like(high, half));
             let factor = common_factor(&[&low, &high]);
-            assembled(
-                &format!("{} to {}", low.text(factor), high.text(factor)),
-                factor,
-                unit,
-            )
+            assembled(&format!("{} to {}", low.text(factor), high.text(factor)), factor, unit)
         }
         (true, false) if high == f64::INFINITY => format!("{} and above", end(low)),
         (false, true) if low == f64::NEG_INFINITY => format!("{} and below", end(high)),
-        (false, false) if low == f64::NEG_INFINITY && high == f64::INFINITY => {
-            "any value".to_owned()
-        }
+        (false, false) if low == f64::NEG_INFINITY && high == f64::INFINITY => "any value".to_owned(),
         _ => NOT_KNOWN.to_owned(),
     }
 }
@@ -251,29 +214,17 @@ pub fn number(value: f64, significant: usize) -> String {
 
 /// A number to the decimal place of an uncertainty that is shown to two significant digits.
 pub fn to_match(value: f64, like: f64) -> String {
-    if value.is_finite() {
-        alone(&rounded_like(value, like), "")
-    } else {
-        not_finite(value).to_owned()
-    }
+    if value.is_finite() { alone(&rounded_like(value, like), "") } else { not_finite(value).to_owned() }
 }
 
 /// The same with an explicit sign, for errors of indication and corrections; zero has none.
 pub fn signed(value: f64, like: f64) -> String {
-    if value.is_finite() {
-        with_sign(&rounded_like(value, like))
-    } else {
-        not_finite(value).to_owned()
-    }
+    if value.is_finite() { with_sign(&rounded_like(value, like)) } else { not_finite(value).to_owned() }
 }
 
 fn with_sign(rounded: &Rounded) -> String {
     let text = alone(rounded, "");
-    if rounded.negative || rounded.is_zero() {
-        text
-    } else {
-        format!("+{text}")
-    }
+    if rounded.negative || rounded.is_zero() { text } else { format!("+{text}") }
 }
 
 /// The error of one indication with its sign, to the decimals with which indication and reference value were written,
@@ -283,10 +234,7 @@ pub fn error_of_indication(error: f64, indication: f64, reference: f64) -> Strin
         return not_finite(if error.is_finite() { f64::NAN } else { error }).to_owned();
     }
     let written = |value: f64| Rounded::shortest(value, 9).place.min(0);
-    with_sign(&Rounded::new(
-        error,
-        written(indication).min(written(reference)),
-    ))
+    with_sign(&Rounded::new(error, written(indication).min(written(reference))))
 }
 
 #[cfg(test)]
@@ -297,27 +245,15 @@ mod tests {
     fn published_results_are_shown_as_published() {
         // The figures of the guide are quoted from memory.
         // JCGM 100:2008, 7.2.6: y = 10.057 62 Ω with u = 27 mΩ is rounded to 10.058 Ω.
-        assert_eq!(
-            value_with_uncertainty(10.05762, 0.027, "Ω"),
-            "10.058 ± 0.027 Ω"
-        );
+        assert_eq!(value_with_uncertainty(10.05762, 0.027, "Ω"), "10.058 ± 0.027 Ω");
         // JCGM 100:2008, 7.2.6: 28.05 kHz is rounded down to 28 kHz.
         assert_eq!(number(28.05, 2), "28");
         // JCGM 100:2008, 7.2.4: m = (100.021 47 ± 0.000 79) g.
-        assert_eq!(
-            value_with_uncertainty(100.02147, 0.00079, "g"),
-            "100.02147 ± 0.00079 g"
-        );
+        assert_eq!(value_with_uncertainty(100.02147, 0.00079, "g"), "100.02147 ± 0.00079 g");
         // JCGM 100:2008, H.1.7: l = (50.000 838 ± 0.000 093) mm.
-        assert_eq!(
-            value_with_uncertainty(50.000838, 0.000093, "mm"),
-            "50.000838 ± 0.000093 mm"
-        );
+        assert_eq!(value_with_uncertainty(50.000838, 0.000093, "mm"), "50.000838 ± 0.000093 mm");
         // JCGM 100:2008, H.3.4: b(30 °C) = −0.1494 °C with u = 0.0041 °C.
-        assert_eq!(
-            value_with_uncertainty(-0.1494, 0.0041, "°C"),
-            "−0.1494 ± 0.0041 °C"
-        );
+        assert_eq!(value_with_uncertainty(-0.1494, 0.0041, "°C"), "−0.1494 ± 0.0041 °C");
     }
 
     #[test]
@@ -338,11 +274,7 @@ mod tests {
             (15.0, 210.0, "20 ± 210 mm"),
             (25.0, 210.0, "20 ± 210 mm"),
             (5.000_000_000_000_001, 210.0, "10 ± 210 mm"),
-            (
-                1e23,
-                1e7,
-                "(9.9999999999999992 ± 0.0000000000000010)×10²² mm",
-            ),
+            (1e23, 1e7, "(9.9999999999999992 ± 0.0000000000000010)×10²² mm"),
             (9_999_999.0, 1.5, "9999999.0 ± 1.5 mm"),
             (123_456_789.0, 2100.0, "(1.234568 ± 0.000021)×10⁸ mm"),
             (1.234e-7, 2.1e-9, "(1.234 ± 0.021)×10⁻⁷ mm"),
@@ -351,11 +283,7 @@ mod tests {
             (12.5, 0.0, "12.5 ± 0 mm"),
             (0.1 + 0.2, 0.0, "0.3 ± 0 mm"),
             (0.0, 0.0, "0 ± 0 mm"),
-            (
-                12.3456789,
-                f64::INFINITY,
-                "12.3457 mm, uncertainty not known",
-            ),
+            (12.3456789, f64::INFINITY, "12.3457 mm, uncertainty not known"),
             (12.5, -1.0, "12.5 mm, uncertainty not known"),
             (f64::NAN, 1.0, "not known"),
             (f64::NEG_INFINITY, 1.0, "−∞"),
@@ -370,14 +298,8 @@ mod tests {
     #[test]
     fn halves_go_to_the_even_digit_of_the_exact_expansion() {
         // 0.125 and 0.375 are doubles; 0.35 is a little less than its decimals, 0.45 a little more.
-        let cases = [
-            (0.125, 2, "0.12"),
-            (0.375, 2, "0.38"),
-            (0.35, 1, "0.3"),
-            (0.45, 1, "0.5"),
-            (2.5, 1, "2"),
-            (3.5, 1, "4"),
-        ];
+        let cases =
+            [(0.125, 2, "0.12"), (0.375, 2, "0.38"), (0.35, 1, "0.3"), (0.45, 1, "0.5"), (2.5, 1, "2"), (3.5, 1, "4")];
         for (value, digits, text) in cases {
             assert_eq!(number(value, digits), text);
         }
@@ -425,15 +347,9 @@ mod tests {
     fn an_error_keeps_the_decimals_of_what_was_read() {
         assert_eq!(error_of_indication(1.0, 151.0, 150.0), "+1");
         assert_eq!(error_of_indication(151.0 - 150.3, 151.0, 150.3), "+0.7");
-        assert_eq!(
-            error_of_indication(7.267 - 7.0 - 4.0 / 15.0, 7.267, 2.5),
-            "0.000"
-        );
+        assert_eq!(error_of_indication(7.267 - 7.0 - 4.0 / 15.0, 7.267, 2.5), "0.000");
         assert_eq!(error_of_indication(-0.04, 4.0, 4.04), "−0.04");
-        assert_eq!(
-            error_of_indication(1.0 / 3.0, 1.0 / 3.0, 0.0),
-            "+0.333333333"
-        );
+        assert_eq!(error_of_indication(1.0 / 3.0, 1.0 / 3.0, 0.0), "+0.333333333");
         assert_eq!(error_of_indication(f64::NAN, 1.0, 1.0), "not known");
         assert_eq!(error_of_indication(1.0, f64::NAN, 1.0), "not known");
     }
@@ -472,10 +388,7 @@ mod tests {
                     signed(a, b),
                     error_of_indication(a, b, a),
                 ] {
-                    assert!(
-                        !text.is_empty() && !text.contains('-') && !text.contains("NaN"),
-                        "{a} {b}: {text}"
-                    );
+                    assert!(!text.is_empty() && !text.contains('-') && !text.contains("NaN"), "{a} {b}: {text}");
                 }
             }
         }

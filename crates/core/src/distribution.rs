@@ -103,11 +103,7 @@ impl Law {
                 return next;
             }
             if !(next > low && next < high) {
-                next = if low.is_finite() {
-                    0.5 * (low + high)
-                } else {
-                    2.0 * z
-                };
+                next = if low.is_finite() { 0.5 * (low + high) } else { 2.0 * z };
             }
             z = next;
         }
@@ -121,11 +117,7 @@ fn first_t_quantile(nu: f64, p: f64, normal: f64) -> f64 {
     // P(T < −z) ≈ c z^−ν with c from the density's tail.
     let log_c = log_height(nu) + 0.5 * (nu - 1.0) * float::ln(nu);
     let power = -float::exp((log_c - float::ln(p)) / nu);
-    if nu < 3.0 && p < 0.05 && power.is_finite() && power < -1e-300 {
-        power
-    } else {
-        stretched
-    }
+    if nu < 3.0 && p < 0.05 && power.is_finite() && power < -1e-300 { power } else { stretched }
 }
 
 /// ln of the t density at 0: ln Γ((ν+1)/2) − ln Γ(ν/2) − ln(νπ)/2, without cancellation at large ν.
@@ -145,8 +137,7 @@ pub fn log_gamma_half_step(a: f64) -> f64 {
     let series = -i
         * (1.0 / 8.0
             - i2 * (1.0 / 192.0
-                - i2 * (1.0 / 640.0
-                    - i2 * (17.0 / 14336.0 - i2 * (31.0 / 18432.0 - i2 * (691.0 / 180_224.0))))));
+                - i2 * (1.0 / 640.0 - i2 * (17.0 / 14336.0 - i2 * (31.0 / 18432.0 - i2 * (691.0 / 180_224.0))))));
     0.5 * float::ln(a) + series + float::ln(ratio)
 }
 
@@ -171,11 +162,7 @@ fn t_tail(nu: f64, t: f64) -> f64 {
         (inverse / (1.0 + inverse), 1.0 / (1.0 + inverse))
     };
     let log_beta = 0.5 * float::ln(std::f64::consts::PI) - log_gamma_half_step(a);
-    let log_x = if ratio.is_finite() {
-        -float::ln_1p(ratio)
-    } else {
-        float::ln(nu) - 2.0 * float::ln(t)
-    };
+    let log_x = if ratio.is_finite() { -float::ln_1p(ratio) } else { float::ln(nu) - 2.0 * float::ln(t) };
     let front = float::exp(a * log_x + b * float::ln(y) - log_beta);
     if x < (a + 1.0) / (a + b + 2.0) {
         0.5 * front * beta_fraction(a, b, x) / a
@@ -240,31 +227,22 @@ pub fn chi_squared_quantile(nu: f64, p: f64) -> f64 {
     for _ in 0..200 {
         // The smaller tail is compared, so that neither end loses digits.
         let below = p <= 0.5;
-        let (tail, target) = if below {
-            (gamma::gamma_lr(0.5 * nu, 0.5 * q), p)
-        } else {
-            (gamma::gamma_ur(0.5 * nu, 0.5 * q), 1.0 - p)
-        };
+        let (tail, target) =
+            if below { (gamma::gamma_lr(0.5 * nu, 0.5 * q), p) } else { (gamma::gamma_ur(0.5 * nu, 0.5 * q), 1.0 - p) };
         if (tail < target) == below {
             low = q;
         } else {
             high = q;
         }
-        let log_density = (0.5 * nu - 1.0) * float::ln(q)
-            - 0.5 * q
-            - 0.5 * nu * std::f64::consts::LN_2
-            - log_gamma(0.5 * nu);
+        let log_density =
+            (0.5 * nu - 1.0) * float::ln(q) - 0.5 * q - 0.5 * nu * std::f64::consts::LN_2 - log_gamma(0.5 * nu);
         let step = (tail - target) / float::exp(log_density);
         let mut next = if below { q - step } else { q + step };
         if (next - q).abs() <= SETTLED * q {
             return next;
         }
         if !(next > low && next < high) {
-            next = if high.is_finite() {
-                0.5 * (low + high)
-            } else {
-                2.0 * q
-            };
+            next = if high.is_finite() { 0.5 * (low + high) } else { 2.0 * q };
         }
         q = next;
     }
@@ -290,42 +268,22 @@ mod tests {
     #[test]
     fn quantiles_of_student_t() {
         // NIST/SEMATECH e-Handbook of Statistical Methods, table 1.3.6.7.2 (printed to three decimals).
-        for (nu, p, printed) in [
-            (1.0, 0.95, 6.314),
-            (1.0, 0.975, 12.706),
-            (4.0, 0.975, 2.776),
-            (10.0, 0.995, 3.169),
-            (100.0, 0.975, 1.984),
-        ] {
+        for (nu, p, printed) in
+            [(1.0, 0.95, 6.314), (1.0, 0.975, 12.706), (4.0, 0.975, 2.776), (10.0, 0.995, 3.169), (100.0, 0.975, 1.984)]
+        {
             assert!((Law::StudentT(nu).quantile(p) - printed).abs() < 5e-4);
         }
         // Closed forms: ν = 1 is tan(π(p − 1/2)); ν = 2 is (2p − 1)√(2/(1 − (2p−1)²)).
-        close(
-            Law::StudentT(1.0).quantile(0.975),
-            12.706_204_736_174_707,
-            1e-14,
-        );
-        close(
-            Law::StudentT(2.0).quantile(0.975),
-            4.302_652_729_749_464,
-            1e-14,
-        );
-        close(
-            Law::StudentT(1.0).quantile(1e-12),
-            -318_309_886_183.790_7,
-            1e-13,
-        );
+        close(Law::StudentT(1.0).quantile(0.975), 12.706_204_736_174_707, 1e-14);
+        close(Law::StudentT(2.0).quantile(0.975), 4.302_652_729_749_464, 1e-14);
+        close(Law::StudentT(1.0).quantile(1e-12), -318_309_886_183.790_7, 1e-13);
     }
 
     #[test]
     fn distribution_function_of_student_t() {
         for t in [1e-9, 0.1, 0.7, 1.0, 3.0, 40.0, 1e8] {
             // ν = 1: P(T > t) = atan(1/t)/π; ν = 2: (1 − t/√(2 + t²))/2 = 1/(2 + t² + t√(2 + t²)).
-            close(
-                Law::StudentT(1.0).cdf(-t),
-                libm::atan2(1.0, t) / std::f64::consts::PI,
-                1e-14,
-            );
+            close(Law::StudentT(1.0).cdf(-t), libm::atan2(1.0, t) / std::f64::consts::PI, 1e-14);
             let root = libm::sqrt(2.0 + t * t);
             close(Law::StudentT(2.0).cdf(-t), 1.0 / (root * (root + t)), 1e-14);
         }
@@ -335,20 +293,12 @@ mod tests {
             let (h, step) = (1.0 / MANY, 1e-7);
             let below = |k: f64| p(1.0 / (h + k * step)); // fewer degrees of freedom: continued fraction
             let extrapolated = 3.0 * below(1.0) - 3.0 * below(2.0) + below(3.0);
-            assert!(
-                (p(MANY) - extrapolated).abs() < 1e-12,
-                "t = {t}: {:e}",
-                p(MANY) - extrapolated
-            );
+            assert!((p(MANY) - extrapolated).abs() < 1e-12, "t = {t}: {:e}", p(MANY) - extrapolated);
         }
         // Many degrees of freedom: the normal with its first correction, P ≈ Φ(z) + φ(z)(z³ + z)/(4ν).
         let z: f64 = -1.5;
         let phi = float::exp(Law::Normal.log_density(z));
-        close(
-            Law::StudentT(1e6).cdf(z),
-            Law::Normal.cdf(z) - phi * (z * z * z + z) / 4e6,
-            1e-11,
-        );
+        close(Law::StudentT(1e6).cdf(z), Law::Normal.cdf(z) - phi * (z * z * z + z) / 4e6, 1e-11);
     }
 
     #[test]
@@ -363,45 +313,25 @@ mod tests {
         for p in [1e-10, 0.025, 0.4] {
             close(Law::Normal.cdf(Law::Normal.quantile(p)), p, 1e-14);
         }
-        close(
-            Law::Normal.coverage_factor(0.95),
-            1.959_963_984_540_054,
-            1e-15,
-        );
+        close(Law::Normal.coverage_factor(0.95), 1.959_963_984_540_054, 1e-15);
     }
 
     #[test]
     fn quantiles_of_chi_squared() {
         // NIST/SEMATECH e-Handbook of Statistical Methods, table 1.3.6.7.4 (printed to three decimals).
-        for (nu, p, printed) in [
-            (8.0, 0.025, 2.180),
-            (8.0, 0.975, 17.535),
-            (1.0, 0.975, 5.024),
-            (100.0, 0.95, 124.342),
-        ] {
+        for (nu, p, printed) in [(8.0, 0.025, 2.180), (8.0, 0.975, 17.535), (1.0, 0.975, 5.024), (100.0, 0.95, 124.342)]
+        {
             assert!((chi_squared_quantile(nu, p) - printed).abs() < 5e-4);
         }
         // ν = 2: −2 ln(1 − p).
-        close(
-            chi_squared_quantile(2.0, 0.975),
-            -2.0 * float::ln(0.025),
-            1e-13,
-        );
-        close(
-            chi_squared_quantile(2.0, 1e-6),
-            -2.0 * float::ln_1p(-1e-6),
-            1e-13,
-        );
+        close(chi_squared_quantile(2.0, 0.975), -2.0 * float::ln(0.025), 1e-13);
+        close(chi_squared_quantile(2.0, 1e-6), -2.0 * float::ln_1p(-1e-6), 1e-13);
     }
 
     #[test]
     fn upper_tail_of_f() {
         // F(1, ν) is the square of t(ν).
         let t: f64 = 2.3;
-        close(
-            f_upper_tail(t * t, 1.0, 7.0),
-            2.0 * Law::StudentT(7.0).cdf(-t),
-            1e-12,
-        );
+        close(f_upper_tail(t * t, 1.0, 7.0), 2.0 * Law::StudentT(7.0).cdf(-t), 1e-12);
     }
 }

@@ -55,15 +55,12 @@ impl Factor {
     /// The first column that depends linearly on those before it.
     pub fn new(system: DMatrix<Dd>) -> Result<Factor, Dependent> {
         let p = system.ncols() - 1;
-        let lengths: Vec<f64> = (0..p)
-            .map(|j| length(system.column(j).iter()).to_f64())
-            .collect();
-        let factor =
-            if system.nrows() * p * p <= MOST_DOUBLE_DOUBLE || system.nrows() <= 2 * SAMPLE_ROWS {
-                householder(system)
-            } else {
-                blocked(&system)
-            };
+        let lengths: Vec<f64> = (0..p).map(|j| length(system.column(j).iter()).to_f64()).collect();
+        let factor = if system.nrows() * p * p <= MOST_DOUBLE_DOUBLE || system.nrows() <= 2 * SAMPLE_ROWS {
+            householder(system)
+        } else {
+            blocked(&system)
+        };
         factor.check_rank(&lengths)?;
         Ok(factor)
     }
@@ -91,17 +88,13 @@ impl Factor {
 
     /// ln det(AᵀA) = 2 Σ ln r_jj.
     pub fn log_determinant(&self) -> f64 {
-        (0..self.columns())
-            .map(|j| 2.0 * crate::float::ln(self.triangle[(j, j)].to_f64()))
-            .sum()
+        (0..self.columns()).map(|j| 2.0 * crate::float::ln(self.triangle[(j, j)].to_f64())).sum()
     }
 
     /// Largest over smallest singular value of the matrix with its columns brought to unit length.
     pub fn condition_number(&self) -> f64 {
         let p = self.columns();
-        let lengths: Vec<Dd> = (0..p)
-            .map(|j| length(self.triangle.column(j).iter()))
-            .collect();
+        let lengths: Vec<Dd> = (0..p).map(|j| length(self.triangle.column(j).iter())).collect();
         let scaled = DMatrix::from_fn(p, p, |i, j| (self.triangle[(i, j)] / lengths[j]).to_f64());
         let values = scaled.singular_values();
         values.max() / values.min()
@@ -111,10 +104,7 @@ impl Factor {
         for (column, &whole) in lengths.iter().enumerate() {
             let own = self.triangle[(column, column)].to_f64();
             if !(own > DEPENDENT * whole) {
-                return Err(Dependent {
-                    column,
-                    on: self.involved(column, lengths),
-                });
+                return Err(Dependent { column, on: self.involved(column, lengths) });
             }
         }
         Ok(())
@@ -125,9 +115,7 @@ impl Factor {
         let leading = self.triangle.view((0, 0), (column, column)).into_owned();
         let right = DVector::from_fn(column, |i, _| self.triangle[(i, column)]);
         let shares = back_substitute(&leading, &right);
-        (0..column)
-            .filter(|&k| shares[k].abs().to_f64() * lengths[k] > 1e-9 * lengths[column])
-            .collect()
+        (0..column).filter(|&k| shares[k].abs().to_f64() * lengths[k] > 1e-9 * lengths[column]).collect()
     }
 }
 
@@ -174,11 +162,7 @@ fn reflect(system: &mut DMatrix<Dd>, k: usize) {
     let half = (norm * norm - alpha * pivot).abs(); // ‖v‖²/2, without cancellation
     for j in k..columns {
         let mut column = system.column_mut(j);
-        let dot: Dd = mirror
-            .iter()
-            .zip(column.iter().skip(k))
-            .map(|(&m, &c)| m * c)
-            .sum();
+        let dot: Dd = mirror.iter().zip(column.iter().skip(k)).map(|(&m, &c)| m * c).sum();
         let factor = dot / half;
         for (i, &m) in mirror.iter().enumerate() {
             column[k + i] -= factor * m;
@@ -189,11 +173,7 @@ fn reflect(system: &mut DMatrix<Dd>, k: usize) {
 /// The triangle with its signs turned so that the diagonal is positive.
 fn with_positive_diagonal(system: DMatrix<Dd>, p: usize, rest: Dd) -> Factor {
     let entry = |i: usize, j: usize| {
-        if i < system.nrows() {
-            system[(i, j)]
-        } else {
-            Dd::ZERO
-        }
+        if i < system.nrows() { system[(i, j)] } else { Dd::ZERO }
     };
     let sign = |i: usize| entry(i, i) < Dd::ZERO;
     let turned = |i: usize, j: usize| if sign(i) { -entry(i, j) } else { entry(i, j) };
@@ -207,9 +187,7 @@ fn with_positive_diagonal(system: DMatrix<Dd>, p: usize, rest: Dd) -> Factor {
 /// The route for many rows: a nearly orthonormal basis from a part of the rows, then blocks in double precision.
 fn blocked(system: &DMatrix<Dd>) -> Factor {
     let (n, p) = (system.nrows(), system.ncols() - 1);
-    let sample = DMatrix::from_fn(SAMPLE_ROWS, p + 1, |i, j| {
-        system[(i * (n - 1) / (SAMPLE_ROWS - 1), j)]
-    });
+    let sample = DMatrix::from_fn(SAMPLE_ROWS, p + 1, |i, j| system[(i * (n - 1) / (SAMPLE_ROWS - 1), j)]);
     let first = householder(sample);
     if (0..p).any(|j| first.triangle[(j, j)].is_zero()) {
         return householder(system.clone());
@@ -224,10 +202,7 @@ fn blocked(system: &DMatrix<Dd>) -> Factor {
         let block = DMatrix::from_fn(rows, p + 1, |i, j| {
             let row = system.row(top + i);
             if j < p {
-                (0..=j)
-                    .map(|l| row[l] * inverse[(l, j)])
-                    .sum::<Dd>()
-                    .to_f64()
+                (0..=j).map(|l| row[l] * inverse[(l, j)]).sum::<Dd>().to_f64()
             } else {
                 (row[p] - (0..p).map(|l| row[l] * start[l]).sum::<Dd>()).to_f64()
             }
@@ -238,43 +213,29 @@ fn blocked(system: &DMatrix<Dd>) -> Factor {
     let second = DMatrix::from_fn(p, p, |i, j| Dd::from(carried[(i, j)]));
     let shift = DVector::from_fn(p, |i, _| Dd::from(carried[(i, p)]));
     let triangle = &multiply(&second, &first.triangle);
-    let moved = &multiply(
-        &second,
-        &DMatrix::from_column_slice(p, 1, first.rotated.as_slice()),
-    );
-    let left = if carried.nrows() > p {
-        Dd::from(carried[(p, p)])
-    } else {
-        Dd::ZERO
-    };
-    let system = DMatrix::from_fn(p, p + 1, |i, j| {
-        if j < p {
-            triangle[(i, j)]
-        } else {
-            shift[i] + moved[(i, 0)]
-        }
-    });
+    let moved = &multiply(&second, &DMatrix::from_column_slice(p, 1, first.rotated.as_slice()));
+    let left = if carried.nrows() > p { Dd::from(carried[(p, p)]) } else { Dd::ZERO };
+    let system = DMatrix::from_fn(p, p + 1, |i, j| if j < p { triangle[(i, j)] } else { shift[i] + moved[(i, 0)] });
     with_positive_diagonal(system, p, left * left)
 }
 
 /// R of the two stacked, by Householder in double precision.
 fn stacked_triangle(above: &DMatrix<f64>, below: &DMatrix<f64>) -> DMatrix<f64> {
     let (n, columns) = (above.nrows() + below.nrows(), below.ncols());
-    let stacked = DMatrix::from_fn(n, columns, |i, j| {
-        if i < above.nrows() {
-            above[(i, j)]
-        } else {
-            below[(i - above.nrows(), j)]
-        }
-    });
+    let stacked =
+        DMatrix::from_fn(
+            n,
+            columns,
+            |i, j| {
+                if i < above.nrows() { above[(i, j)] } else { below[(i - above.nrows(), j)] }
+            },
+        );
     stacked.qr().r()
 }
 
 /// The product of two matrices in double-double, in a fixed order of summation.
 pub fn multiply(a: &DMatrix<Dd>, b: &DMatrix<Dd>) -> DMatrix<Dd> {
-    DMatrix::from_fn(a.nrows(), b.ncols(), |i, j| {
-        (0..a.ncols()).map(|k| a[(i, k)] * b[(k, j)]).sum()
-    })
+    DMatrix::from_fn(a.nrows(), b.ncols(), |i, j| (0..a.ncols()).map(|k| a[(i, k)] * b[(k, j)]).sum())
 }
 
 /// Lower triangular G with G Gᵀ = `matrix` (symmetric positive definite); `None` where it is not.
@@ -319,18 +280,9 @@ mod tests {
     #[test]
     fn a_line_through_four_points_by_hand() {
         // y = 1.5 + 0.8 x least squares of (0,1) (1,3) (2,3) (3,4): normal equations solved by hand, rest 0.7.
-        let f = Factor::new(system(&[
-            &[1., 0., 1.],
-            &[1., 1., 3.],
-            &[1., 2., 3.],
-            &[1., 3., 4.],
-        ]))
-        .unwrap();
+        let f = Factor::new(system(&[&[1., 0., 1.], &[1., 1., 3.], &[1., 2., 3.], &[1., 3., 4.]])).unwrap();
         let w = f.solution();
-        assert!(
-            (w[0].to_f64() - 1.4).abs() < 1e-15 && (w[1].to_f64() - 0.9).abs() < 1e-15,
-            "{w:?}"
-        );
+        assert!((w[0].to_f64() - 1.4).abs() < 1e-15 && (w[1].to_f64() - 0.9).abs() < 1e-15, "{w:?}");
         assert!((f.rest.to_f64() - 0.7).abs() < 1e-15);
         // det(AᵀA) = n Σx² − (Σx)² = 56 − 36
         assert!((f.log_determinant() - crate::float::ln(20.0)).abs() < 1e-14);
@@ -338,17 +290,9 @@ mod tests {
 
     #[test]
     fn dependent_columns_are_named() {
-        let rows: Vec<Vec<f64>> = (0..6)
-            .map(|i| vec![1.0, i as f64, 2.0 + 3.0 * i as f64, 1.0])
-            .collect();
+        let rows: Vec<Vec<f64>> = (0..6).map(|i| vec![1.0, i as f64, 2.0 + 3.0 * i as f64, 1.0]).collect();
         let rows: Vec<&[f64]> = rows.iter().map(Vec::as_slice).collect();
-        assert_eq!(
-            Factor::new(system(&rows)).unwrap_err(),
-            Dependent {
-                column: 2,
-                on: vec![0, 1]
-            }
-        );
+        assert_eq!(Factor::new(system(&rows)).unwrap_err(), Dependent { column: 2, on: vec![0, 1] });
     }
 
     #[test]
@@ -356,29 +300,15 @@ mod tests {
         let n = 6000;
         let rows = DMatrix::from_fn(n, 7, |i, j| {
             let x = Dd::from(i as f64) / Dd::from(n as f64 / 4.0) + Dd::from(1.0);
-            if j < 6 {
-                x.powi(j as u32)
-            } else {
-                Dd::from(((i * 7919) % 1013) as f64 / 1013.0) + x * x
-            }
+            if j < 6 { x.powi(j as u32) } else { Dd::from(((i * 7919) % 1013) as f64 / 1013.0) + x * x }
         });
         let reference = householder(rows.clone());
         let fast = Factor::new(rows).unwrap();
         let (a, b) = (reference.solution(), fast.solution());
         for j in 0..6 {
-            assert!(
-                ((a[j] - b[j]) / a[j]).abs().to_f64() < 1e-12,
-                "{j}: {:?} {:?}",
-                a[j],
-                b[j]
-            );
+            assert!(((a[j] - b[j]) / a[j]).abs().to_f64() < 1e-12, "{j}: {:?} {:?}", a[j], b[j]);
         }
-        assert!(
-            ((reference.rest - fast.rest) / reference.rest)
-                .abs()
-                .to_f64()
-                < 1e-12
-        );
+        assert!(((reference.rest - fast.rest) / reference.rest).abs().to_f64() < 1e-12);
     }
 
     #[test]

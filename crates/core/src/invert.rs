@@ -64,11 +64,7 @@ pub struct Described {
 }
 
 /// Every x in [low, high] with f(x) = target, ascending, for `mean_and_slope` = (f − target, f′).
-pub fn solutions(
-    low: f64,
-    high: f64,
-    mean_and_slope: &dyn Fn(f64) -> (f64, f64),
-) -> (Vec<Solution>, Vec<Seed>) {
+pub fn solutions(low: f64, high: f64, mean_and_slope: &dyn Fn(f64) -> (f64, f64)) -> (Vec<Solution>, Vec<Seed>) {
     let places: Vec<f64> = (0..=SCAN).map(|k| place(low, high, k)).collect();
     let gaps: Vec<f64> = places.iter().map(|&x| mean_and_slope(x).0).collect();
     let mut found: Vec<Solution> = Vec::new();
@@ -76,27 +72,15 @@ pub fn solutions(
     for k in 0..SCAN {
         let (a, b) = (gaps[k], gaps[k + 1]);
         if a == 0.0 {
-            found.push(Solution {
-                x: places[k],
-                slope: mean_and_slope(places[k]).1,
-            });
+            found.push(Solution { x: places[k], slope: mean_and_slope(places[k]).1 });
         } else if a * b < 0.0 {
             found.push(bracketed(places[k], places[k + 1], a, mean_and_slope));
         } else if k > 0 && gaps[k - 1] * a > 0.0 && a.abs() <= (gaps[k - 1]).abs().min(b.abs()) {
-            turning(
-                places[k - 1],
-                places[k + 1],
-                mean_and_slope,
-                &mut found,
-                &mut near,
-            );
+            turning(places[k - 1], places[k + 1], mean_and_slope, &mut found, &mut near);
         }
     }
     if gaps[SCAN] == 0.0 {
-        found.push(Solution {
-            x: places[SCAN],
-            slope: mean_and_slope(places[SCAN]).1,
-        });
+        found.push(Solution { x: places[SCAN], slope: mean_and_slope(places[SCAN]).1 });
     }
     found.sort_by(|a, b| a.x.total_cmp(&b.x));
     found.dedup_by(|a, b| a.x == b.x);
@@ -129,20 +113,12 @@ fn turning(
         found.push(bracketed(low, least, first, mean_and_slope));
         found.push(bracketed(least, high, gap, mean_and_slope));
     } else if distance(least) < distance(low).min(distance(high)) {
-        near.push(Seed {
-            x: least,
-            width: (high - low) / 4096.0,
-        });
+        near.push(Seed { x: least, width: (high - low) / 4096.0 });
     }
 }
 
 /// The solution between two places of different sign: Newton, kept inside the bracket.
-fn bracketed(
-    low: f64,
-    high: f64,
-    at_low: f64,
-    mean_and_slope: &dyn Fn(f64) -> (f64, f64),
-) -> Solution {
+fn bracketed(low: f64, high: f64, at_low: f64, mean_and_slope: &dyn Fn(f64) -> (f64, f64)) -> Solution {
     let (mut a, mut b) = (low, high);
     let mut x = 0.5 * (a + b);
     for _ in 0..200 {
@@ -164,19 +140,12 @@ fn bracketed(
         }
         x = next;
     }
-    Solution {
-        x,
-        slope: mean_and_slope(x).1,
-    }
+    Solution { x, slope: mean_and_slope(x).1 }
 }
 
 /// The k-th of SCAN + 1 equally spaced places, both ends exact.
 fn place(low: f64, high: f64, k: usize) -> f64 {
-    if k == SCAN {
-        high
-    } else {
-        low + (high - low) * (k as f64 / SCAN as f64)
-    }
+    if k == SCAN { high } else { low + (high - low) * (k as f64 / SCAN as f64) }
 }
 
 /// A density on an extent as panels, with the logarithm of its scale.
@@ -188,19 +157,10 @@ pub struct ValueDensity {
 
 impl ValueDensity {
     /// From the logarithm of an unnormalised density; −∞ or NaN counts as zero. `None` where it is zero everywhere.
-    pub fn new(
-        extent: [f64; 2],
-        log_density: &dyn Fn(f64) -> f64,
-        seeds: &[Seed],
-    ) -> Option<ValueDensity> {
+    pub fn new(extent: [f64; 2], log_density: &dyn Fn(f64) -> f64, seeds: &[Seed]) -> Option<ValueDensity> {
         let [low, high] = extent;
-        let scanned = (0..=SCAN)
-            .map(|k| place(low, high, k))
-            .chain(seeds.iter().map(|s| s.x));
-        let mut best = Seed {
-            x: low,
-            width: (high - low) / SCAN as f64,
-        };
+        let scanned = (0..=SCAN).map(|k| place(low, high, k)).chain(seeds.iter().map(|s| s.x));
+        let mut best = Seed { x: low, width: (high - low) / SCAN as f64 };
         let mut log_scale = f64::NEG_INFINITY;
         for x in scanned.filter(|x| *x >= low && *x <= high) {
             let value = log_density(x);
@@ -213,20 +173,11 @@ impl ValueDensity {
         }
         let edges = edges(low, high, seeds.iter().copied().chain([best]));
         let density = Piecewise::new(&edges, &scaled(log_density, log_scale));
-        (density.mass() > 0.0 && density.mass().is_finite()).then_some(ValueDensity {
-            density,
-            log_scale,
-            extent,
-        })
+        (density.mass() > 0.0 && density.mass().is_finite()).then_some(ValueDensity { density, log_scale, extent })
     }
 
     /// The equal-tailed interval after the extent is widened to `outer`.
-    pub fn interval_when_widened(
-        &self,
-        outer: [f64; 2],
-        log_density: &dyn Fn(f64) -> f64,
-        coverage: f64,
-    ) -> [f64; 2] {
+    pub fn interval_when_widened(&self, outer: [f64; 2], log_density: &dyn Fn(f64) -> f64, coverage: f64) -> [f64; 2] {
         let function = scaled(log_density, self.log_scale);
         let side = |a: f64, b: f64| Piecewise::new(&edges(a, b, std::iter::empty()), &function);
         let wide = Piecewise::concatenate(vec![
@@ -234,10 +185,7 @@ impl ValueDensity {
             self.density.clone(),
             side(self.extent[1], outer[1]),
         ]);
-        [
-            wide.quantile((1.0 - coverage) / 2.0),
-            wide.quantile((1.0 + coverage) / 2.0),
-        ]
+        [wide.quantile((1.0 - coverage) / 2.0), wide.quantile((1.0 + coverage) / 2.0)]
     }
 
     /// Everything that is reported of the value.
@@ -259,21 +207,9 @@ impl ValueDensity {
             standard_deviation: float::sqrt((second - mean_shift * mean_shift).max(0.0)),
             interval: [d.quantile(tail), d.quantile(1.0 - tail)],
             shortest: shortest(d, coverage),
-            highest_density: highest_density(
-                d,
-                &samples,
-                &modes,
-                &valleys,
-                self.extent,
-                top,
-                coverage,
-            ),
+            highest_density: highest_density(d, &samples, &modes, &valleys, self.extent, top, coverage),
             masses: cuts.windows(2).map(|w| d.cdf(w[1]) - d.cdf(w[0])).collect(),
-            modes: modes
-                .iter()
-                .copied()
-                .filter(|m| *m > self.extent[0] && *m < self.extent[1])
-                .collect(),
+            modes: modes.iter().copied().filter(|m| *m > self.extent[0] && *m < self.extent[1]).collect(),
             at_ends: [d.value(self.extent[0]) / top, d.value(self.extent[1]) / top],
             log_mean: self.log_scale + float::ln(d.mass() / (self.extent[1] - self.extent[0])),
             drawn: drawn(d),
@@ -296,9 +232,7 @@ fn scaled<'a>(log_density: &'a dyn Fn(f64) -> f64, log_scale: f64) -> impl Fn(f6
 /// Edges of the first panels: evenly spaced, and around each seed at distances that grow by a constant factor.
 fn edges(low: f64, high: f64, seeds: impl Iterator<Item = Seed>) -> Vec<f64> {
     const EVEN: usize = 16;
-    let mut edges: Vec<f64> = (0..=EVEN)
-        .map(|k| place(low, high, k * (SCAN / EVEN)))
-        .collect();
+    let mut edges: Vec<f64> = (0..=EVEN).map(|k| place(low, high, k * (SCAN / EVEN))).collect();
     for seed in seeds {
         edges.push(seed.x);
         let mut distance = 2.0 * seed.width;
@@ -361,11 +295,7 @@ fn refined(d: &Piecewise, samples: &[(f64, f64)], k: usize, sign: f64) -> f64 {
         }
     }
     let inside = 0.5 * (a + b);
-    if sign * d.value(inside) >= sign * samples[k].1 {
-        inside
-    } else {
-        samples[k].0
-    }
+    if sign * d.value(inside) >= sign * samples[k].1 { inside } else { samples[k].0 }
 }
 
 /// The shortest connected interval: a scan over the lower tail, then equal density at both ends.
@@ -379,10 +309,7 @@ fn shortest(d: &Piecewise, coverage: f64) -> [f64; 2] {
         h - l
     };
     let lengths: Vec<f64> = (0..=STEPS).map(length).collect();
-    let best = (0..=STEPS).fold(
-        0,
-        |best, k| if lengths[k] < lengths[best] { k } else { best },
-    );
+    let best = (0..=STEPS).fold(0, |best, k| if lengths[k] < lengths[best] { k } else { best });
     // Density at the lower end less density at the upper: negative where moving up shortens.
     let slant = |a: f64| {
         let [l, h] = ends(a);
@@ -422,12 +349,7 @@ fn highest_density(
     turns.sort_by(f64::total_cmp);
     turns.dedup();
     let above = |level: f64| regions(d, samples, &turns, level);
-    let mass = |regions: &[[f64; 2]]| {
-        regions
-            .iter()
-            .map(|r| d.cdf(r[1]) - d.cdf(r[0]))
-            .sum::<f64>()
-    };
+    let mass = |regions: &[[f64; 2]]| regions.iter().map(|r| d.cdf(r[1]) - d.cdf(r[0])).sum::<f64>();
     let (mut low, mut high) = (0.0, top);
     for _ in 0..60 {
         let level = 0.5 * (low + high);
@@ -488,9 +410,7 @@ fn crossing(d: &Piecewise, samples: &[(f64, f64)], a: f64, b: f64, level: f64) -
 /// Points of the normalised density over the part that matters.
 fn drawn(d: &Piecewise) -> (Vec<f64>, Vec<f64>) {
     let (low, high) = (d.quantile(5e-4), d.quantile(1.0 - 5e-4));
-    let x: Vec<f64> = (0..DRAWN)
-        .map(|k| low + (high - low) * k as f64 / (DRAWN - 1) as f64)
-        .collect();
+    let x: Vec<f64> = (0..DRAWN).map(|k| low + (high - low) * k as f64 / (DRAWN - 1) as f64).collect();
     let y = x.iter().map(|&x| d.value(x) / d.mass()).collect();
     (x, y)
 }

@@ -46,10 +46,9 @@ impl Sigma {
             NoiseKind::Unknown => Ok(Sigma::Unknown),
             NoiseKind::Known => deviation(false).map(Sigma::Known),
             NoiseKind::Stated => match noise.degrees_of_freedom {
-                Some(nu) if nu > 0.0 && nu.is_finite() => Ok(Sigma::Stated {
-                    degrees_of_freedom: nu,
-                    standard_deviation: deviation(true)?,
-                }),
+                Some(nu) if nu > 0.0 && nu.is_finite() => {
+                    Ok(Sigma::Stated { degrees_of_freedom: nu, standard_deviation: deviation(true)? })
+                }
                 _ => Err(Problem::error(
                     "noise_degrees_of_freedom",
                     "model.noise.degrees_of_freedom",
@@ -74,23 +73,13 @@ impl Growth {
     /// # Errors
     /// ρ negative or not finite; no span.
     pub fn of(visit: &Visit, points_span: f64) -> Result<(Growth, bool), Problem> {
-        let constant = Growth {
-            rho: 0.0,
-            span: 1.0,
-        };
+        let constant = Growth { rho: 0.0, span: 1.0 };
         let rho = match &visit.model.noise.profile {
             None | Some(Profile::Constant) => return Ok((constant, false)),
-            Some(Profile::Proportional {
-                rho: NumberOr::Word(_),
-            }) => return Ok((constant, true)),
-            Some(Profile::Proportional {
-                rho: NumberOr::Number(rho),
-            }) => *rho,
+            Some(Profile::Proportional { rho: NumberOr::Word(_) }) => return Ok((constant, true)),
+            Some(Profile::Proportional { rho: NumberOr::Number(rho) }) => *rho,
         };
-        let span = visit
-            .instrument
-            .range
-            .map_or(points_span, |(a, b)| (b - a).abs());
+        let span = visit.instrument.range.map_or(points_span, |(a, b)| (b - a).abs());
         if rho >= 0.0 && rho.is_finite() && span > 0.0 && span.is_finite() {
             Ok((Growth { rho, span }, false))
         } else {

@@ -29,11 +29,7 @@ impl Characteristic {
     /// # Errors
     /// A range that is missing or empty where one is needed; identity between different units.
     pub fn of(instrument: &Instrument) -> Result<Option<Characteristic>, Problem> {
-        let same_unit = instrument
-            .output
-            .unit
-            .as_ref()
-            .is_none_or(|unit| *unit == instrument.unit);
+        let same_unit = instrument.output.unit.as_ref().is_none_or(|unit| *unit == instrument.unit);
         let place = "instrument.output.nominal";
         match &instrument.output.nominal {
             None if same_unit => Ok(Some(Characteristic::Identity)),
@@ -44,27 +40,15 @@ impl Characteristic {
                 place,
                 "The nominal characteristic is the identity, but input and output have different units: state it as linear or square root. No error of indication is computed.",
             )),
-            Some(Nominal::Linear { range }) => {
-                Characteristic::scaled(instrument, *range, false).map(Some)
-            }
-            Some(Nominal::SquareRoot { range }) => {
-                Characteristic::scaled(instrument, *range, true).map(Some)
-            }
+            Some(Nominal::Linear { range }) => Characteristic::scaled(instrument, *range, false).map(Some),
+            Some(Nominal::SquareRoot { range }) => Characteristic::scaled(instrument, *range, true).map(Some),
         }
     }
 
-    fn scaled(
-        instrument: &Instrument,
-        output: (f64, f64),
-        root: bool,
-    ) -> Result<Characteristic, Problem> {
+    fn scaled(instrument: &Instrument, output: (f64, f64), root: bool) -> Result<Characteristic, Problem> {
         let wide = |(a, b): (f64, f64)| a.is_finite() && b.is_finite() && a != b;
         match instrument.range {
-            Some(input) if wide(input) && wide(output) => Ok(Characteristic::Scaled {
-                input,
-                output,
-                root,
-            }),
+            Some(input) if wide(input) && wide(output) => Ok(Characteristic::Scaled { input, output, root }),
             _ => Err(Problem::warning(
                 "nominal_needs_range",
                 "instrument.output.nominal",
@@ -77,11 +61,7 @@ impl Characteristic {
     pub fn at(self, x: f64) -> Dd {
         match self {
             Characteristic::Identity => Dd::from(x),
-            Characteristic::Scaled {
-                input,
-                output,
-                root,
-            } => {
+            Characteristic::Scaled { input, output, root } => {
                 let share = Dd::from_sum(x, -input.0) / Dd::from_sum(input.1, -input.0);
                 let share = if root { share.sqrt() } else { share };
                 Dd::from(output.0) + Dd::from_sum(output.1, -output.0) * share
@@ -109,11 +89,7 @@ mod tests {
         Instrument {
             unit: "bar".into(),
             range: Some((0.0, 10.0)),
-            output: Output {
-                unit: Some("mA".into()),
-                resolution: None,
-                nominal: Some(nominal),
-            },
+            output: Output { unit: Some("mA".into()), resolution: None, nominal: Some(nominal) },
             ..Instrument::default()
         }
     }
@@ -121,27 +97,18 @@ mod tests {
     #[test]
     fn four_to_twenty_milliampere() {
         // 4 mA at the lower and 20 mA at the upper end: common practice, no source.
-        let linear = Characteristic::of(&transmitter(Nominal::Linear { range: (4.0, 20.0) }))
-            .unwrap()
-            .unwrap();
+        let linear = Characteristic::of(&transmitter(Nominal::Linear { range: (4.0, 20.0) })).unwrap().unwrap();
         assert_eq!(linear.at(0.0).to_f64(), 4.0);
         assert_eq!(linear.at(2.5).to_f64(), 8.0);
         assert_eq!(linear.at(10.0).to_f64(), 20.0);
         assert_eq!(linear.output_span(None), Some(16.0));
-        let root = Characteristic::of(&transmitter(Nominal::SquareRoot { range: (4.0, 20.0) }))
-            .unwrap()
-            .unwrap();
+        let root = Characteristic::of(&transmitter(Nominal::SquareRoot { range: (4.0, 20.0) })).unwrap().unwrap();
         assert_eq!(root.at(2.5).to_f64(), 12.0);
         assert!(!root.at(-1.0).is_finite());
     }
 
     #[test]
     fn identity_between_different_units_is_refused() {
-        assert_eq!(
-            Characteristic::of(&transmitter(Nominal::Identity))
-                .unwrap_err()
-                .code,
-            "nominal_units_differ"
-        );
+        assert_eq!(Characteristic::of(&transmitter(Nominal::Identity)).unwrap_err().code, "nominal_units_differ");
     }
 }

@@ -73,9 +73,7 @@ pub fn observations(
 ) -> Result<Vec<Observation>, Problem> {
     let mut rows = Vec::new();
     for (index, point) in visit.points.iter().enumerate() {
-        let Some((reference, values)) =
-            pair(point).filter(|_| is_used(point) && point.state == state)
-        else {
+        let Some((reference, values)) = pair(point).filter(|_| is_used(point) && point.state == state) else {
             continue;
         };
         let influences = influences_of(visit, index, point, names, needed)?;
@@ -104,13 +102,7 @@ fn influences_of(
     names: &[String],
     needed: &[usize],
 ) -> Result<Vec<f64>, Problem> {
-    let value = |name: &String| {
-        point
-            .influences
-            .get(name)
-            .or_else(|| visit.conditions.get(name))
-            .copied()
-    };
+    let value = |name: &String| point.influences.get(name).or_else(|| visit.conditions.get(name)).copied();
     for &k in needed {
         let name = &names[k];
         if !value(name).is_some_and(f64::is_finite) {
@@ -124,10 +116,7 @@ fn influences_of(
                 .with("name", name.as_str()));
         }
     }
-    Ok(names
-        .iter()
-        .map(|name| value(name).unwrap_or(f64::NAN))
-        .collect())
+    Ok(names.iter().map(|name| value(name).unwrap_or(f64::NAN)).collect())
 }
 
 fn repeats(index: usize, point: &Point, given: usize) -> Result<f64, Problem> {
@@ -135,28 +124,16 @@ fn repeats(index: usize, point: &Point, given: usize) -> Result<f64, Problem> {
         None => Ok(1.0),
         Some(m) if m >= 1.0 && m.is_finite() && given == 1 => Ok(m),
         Some(m) if given == 1 => {
-            let sentence = format!(
-                "Point {}: the number of repeats is {m}; it must be 1 or more.",
-                index + 1
-            );
-            Err(Problem::error(
-                "repeats_not_positive",
-                format!("points[{index}].repeats"),
-                sentence,
-            )
-            .with("point", index + 1))
+            let sentence = format!("Point {}: the number of repeats is {m}; it must be 1 or more.", index + 1);
+            Err(Problem::error("repeats_not_positive", format!("points[{index}].repeats"), sentence)
+                .with("point", index + 1))
         }
         Some(_) => {
             let sentence = format!(
                 "Point {} has both raw repeats and a number of repeats: give the raw indications, or their mean with the number.",
                 index + 1
             );
-            Err(Problem::error(
-                "repeats_twice",
-                format!("points[{index}].repeats"),
-                sentence,
-            )
-            .with("point", index + 1))
+            Err(Problem::error("repeats_twice", format!("points[{index}].repeats"), sentence).with("point", index + 1))
         }
     }
 }
@@ -167,10 +144,8 @@ fn own_uncertainty(index: usize, point: &Point) -> Result<f64, Problem> {
         Some(u) if u >= 0.0 && u.is_finite() => Ok(u),
         Some(u) => {
             let place = format!("points[{index}].indication_uncertainty");
-            let sentence = format!(
-                "Point {}: the uncertainty of the indication is {u}; it must be zero or positive.",
-                index + 1
-            );
+            let sentence =
+                format!("Point {}: the uncertainty of the indication is {u}; it must be zero or positive.", index + 1);
             Err(Problem::error("uncertainty_negative", place, sentence).with("point", index + 1))
         }
     }

@@ -41,10 +41,7 @@ pub struct Component {
 impl Component {
     /// Location of Σ w_j φ_j.
     pub fn location_at(&self, row: &[Dd]) -> Dd {
-        row.iter()
-            .zip(self.location.iter())
-            .map(|(&f, &w)| f * w)
-            .sum()
+        row.iter().zip(self.location.iter()).map(|(&f, &w)| f * w).sum()
     }
 
     /// Squared scale of Σ w_j φ_j.
@@ -106,16 +103,9 @@ pub fn fit(
     let height = (n + prior.rows.len()).max(p);
     let stacked = DMatrix::from_fn(height, p + 1, |i, j| {
         if i < n {
-            (if j < p {
-                design[i][j]
-            } else {
-                rows[i].response
-            }) / deviations[i]
+            (if j < p { design[i][j] } else { rows[i].response }) / deviations[i]
         } else {
-            prior
-                .rows
-                .get(i - n)
-                .map_or(Dd::ZERO, |row| row[j] * prior_scale)
+            prior.rows.get(i - n).map_or(Dd::ZERO, |row| row[j] * prior_scale)
         }
     });
     if stacked.iter().any(|e| !e.is_finite()) {
@@ -128,11 +118,7 @@ pub fn fit(
     let factor = Factor::new(stacked).map_err(|d| dependent(&d, shape, rows))?;
     let location = factor.solution();
     let inverse_triangle = factor.inverse_triangle();
-    if location
-        .iter()
-        .chain(inverse_triangle.iter())
-        .any(|e| !e.is_finite())
-    {
+    if location.iter().chain(inverse_triangle.iter()).any(|e| !e.is_finite()) {
         return Err(Problem::error(
             "out_of_range",
             "points",
@@ -169,34 +155,18 @@ fn scale_of_noise(n: usize, p: usize, sigma: Sigma, prior: &Prior, rest: Dd) -> 
     let (nu0, stated_sum) = match sigma {
         Sigma::Known(_) => return (Law::Normal, Dd::ONE, 0.0),
         Sigma::Unknown => (0.0, Dd::ZERO),
-        Sigma::Stated {
-            degrees_of_freedom: nu,
-            standard_deviation: s,
-        } => (nu, Dd::from_product(s, s) * nu),
+        Sigma::Stated { degrees_of_freedom: nu, standard_deviation: s } => (nu, Dd::from_product(s, s) * nu),
     };
     let nu = nu0 + (n + prior.rank) as f64 - p as f64;
-    (
-        Law::StudentT(nu),
-        ((stated_sum + rest) / Dd::from(nu)).sqrt(),
-        stated_sum.to_f64(),
-    )
+    (Law::StudentT(nu), ((stated_sum + rest) / Dd::from(nu)).sqrt(), stated_sum.to_f64())
 }
 
-fn residual_sum(
-    rows: &[Observation],
-    design: &[Vec<Dd>],
-    location: &DVector<Dd>,
-    deviations: &[Dd],
-) -> Dd {
+fn residual_sum(rows: &[Observation], design: &[Vec<Dd>], location: &DVector<Dd>, deviations: &[Dd]) -> Dd {
     rows.iter()
         .zip(design)
         .zip(deviations)
         .map(|((row, basis), &deviation)| {
-            let fitted: Dd = basis
-                .iter()
-                .zip(location.iter())
-                .map(|(&f, &w)| f * w)
-                .sum();
+            let fitted: Dd = basis.iter().zip(location.iter()).map(|(&f, &w)| f * w).sum();
             let e = (row.response - fitted) / deviation;
             e * e
         })
@@ -207,19 +177,11 @@ fn enough_rows(rows: &[Observation], p: usize, sigma: Sigma, prior: &Prior) -> R
     let (n, informed) = (rows.len(), prior.rank);
     let degrees = matches!(sigma, Sigma::Unknown) && !prior.over_sigma;
     let needed = p.saturating_sub(informed) + usize::from(degrees);
-    let needed = if prior.over_sigma && matches!(sigma, Sigma::Unknown) {
-        needed.max(1)
-    } else {
-        needed
-    };
+    let needed = if prior.over_sigma && matches!(sigma, Sigma::Unknown) { needed.max(1) } else { needed };
     if n >= needed {
         return Ok(());
     }
-    let coefficients = if p == 1 {
-        "1 coefficient".to_owned()
-    } else {
-        format!("{p} coefficients")
-    };
+    let coefficients = if p == 1 { "1 coefficient".to_owned() } else { format!("{p} coefficients") };
     let given = match n {
         0 => "no complete point is".to_owned(),
         1 => "only 1 indication is".to_owned(),
@@ -230,9 +192,8 @@ fn enough_rows(rows: &[Observation], p: usize, sigma: Sigma, prior: &Prior) -> R
     } else {
         "measure more points or choose a simpler shape"
     };
-    let sentence = format!(
-        "This shape has {coefficients} and needs at least {needed} indications, but {given} there: {remedy}."
-    );
+    let sentence =
+        format!("This shape has {coefficients} and needs at least {needed} indications, but {given} there: {remedy}.");
     Err(Problem::error("too_few_points", "points", sentence)
         .with("needed", needed)
         .with("given", n)
@@ -266,14 +227,10 @@ fn row_deviations(rows: &[Observation], sigma: Sigma) -> Result<Vec<Dd>, Problem
 /// The sentence for terms that cannot be told apart.
 fn dependent(found: &Dependent, shape: &dyn Shape, rows: &[Observation]) -> Problem {
     let first = rows.first().map(|row| row.argument);
-    if rows.len() > 1
-        && rows.iter().all(|row| Some(row.argument) == first)
-        && shape.influences_used().is_empty()
-    {
+    if rows.len() > 1 && rows.iter().all(|row| Some(row.argument) == first) && shape.influences_used().is_empty() {
         let value = first.unwrap_or(f64::NAN);
-        let sentence = format!(
-            "All points are at {value}, so nothing is known of the slope: measure at another value."
-        );
+        let sentence =
+            format!("All points are at {value}, so nothing is known of the slope: measure at another value.");
         return Problem::error("one_place_only", "points", sentence).with("at", value);
     }
     let terms = shape.terms();
@@ -292,9 +249,7 @@ fn dependent(found: &Dependent, shape: &dyn Shape, rows: &[Observation]) -> Prob
             .with("coefficients", shape.columns());
     }
     let sentence = if found.on.is_empty() {
-        format!(
-            "The term {column} is zero at every point: leave it out, or measure where it is not."
-        )
+        format!("The term {column} is zero at every point: leave it out, or measure where it is not.")
     } else {
         let others: Vec<&str> = found.on.iter().map(|&k| terms[k].as_str()).collect();
         format!(
@@ -302,9 +257,7 @@ fn dependent(found: &Dependent, shape: &dyn Shape, rows: &[Observation]) -> Prob
             others.join(", ")
         )
     };
-    Problem::error("terms_dependent", "model.terms", sentence)
-        .with("term", column)
-        .with("column", found.column)
+    Problem::error("terms_dependent", "model.terms", sentence).with("term", column).with("column", found.column)
 }
 
 /// ln p(y) with all normalising constants.
@@ -331,20 +284,13 @@ fn log_evidence(
         Sigma::Known(_) => Some(common - 0.5 * rest),
         Sigma::Unknown => {
             // ∫ σ^−k exp(−rest/2σ²) d ln σ = ½ Γ(k/2) (rest/2)^(−k/2)
-            (rest > 0.0 && free > 0.0).then(|| {
-                common + log_gamma(0.5 * free)
-                    - 0.5 * free * float::ln(0.5 * rest)
-                    - std::f64::consts::LN_2
-            })
+            (rest > 0.0 && free > 0.0)
+                .then(|| common + log_gamma(0.5 * free) - 0.5 * free * float::ln(0.5 * rest) - std::f64::consts::LN_2)
         }
-        Sigma::Stated {
-            degrees_of_freedom: nu,
-            ..
-        } => {
+        Sigma::Stated { degrees_of_freedom: nu, .. } => {
             let total = stated_sum + rest;
             Some(
-                common + 0.5 * nu * float::ln(0.5 * stated_sum) - log_gamma(0.5 * nu)
-                    + log_gamma(0.5 * (nu + free))
+                common + 0.5 * nu * float::ln(0.5 * stated_sum) - log_gamma(0.5 * nu) + log_gamma(0.5 * (nu + free))
                     - 0.5 * (nu + free) * float::ln(0.5 * total),
             )
         }

@@ -49,11 +49,7 @@ impl Mixture {
 
     /// The mean of the locations (the mean of the mixture, where it exists).
     pub fn location(&self) -> f64 {
-        self.parts
-            .iter()
-            .map(|p| p.location * p.weight)
-            .sum::<Dd>()
-            .to_f64()
+        self.parts.iter().map(|p| p.location * p.weight).sum::<Dd>().to_f64()
     }
 
     /// The scale, where there is a single part.
@@ -84,15 +80,9 @@ impl Mixture {
         match self.parts.as_slice() {
             [part] => {
                 let half = Dd::from_product(part.scale, part.law.coverage_factor(coverage));
-                [
-                    (part.location - half).to_f64(),
-                    (part.location + half).to_f64(),
-                ]
+                [(part.location - half).to_f64(), (part.location + half).to_f64()]
             }
-            _ => [
-                self.quantile((1.0 - coverage) / 2.0),
-                self.quantile((1.0 + coverage) / 2.0),
-            ],
+            _ => [self.quantile((1.0 - coverage) / 2.0), self.quantile((1.0 + coverage) / 2.0)],
         }
     }
 
@@ -106,24 +96,14 @@ impl Mixture {
 
     /// P(Y ≤ y).
     pub fn cdf(&self, y: f64) -> f64 {
-        self.parts
-            .iter()
-            .map(|p| p.weight * p.law.cdf((Dd::from(y) - p.location).to_f64() / p.scale))
-            .sum()
+        self.parts.iter().map(|p| p.weight * p.law.cdf((Dd::from(y) - p.location).to_f64() / p.scale)).sum()
     }
 
     /// y with P(Y ≤ y) = `probability`, by bisection between the extreme quantiles of the parts.
     pub fn quantile(&self, probability: f64) -> f64 {
-        let of_part = |p: &Part| {
-            (p.location + Dd::from_product(p.scale, p.law.quantile(probability))).to_f64()
-        };
-        let (mut low, mut high) = self
-            .parts
-            .iter()
-            .map(of_part)
-            .fold((f64::INFINITY, f64::NEG_INFINITY), |(l, h), q| {
-                (l.min(q), h.max(q))
-            });
+        let of_part = |p: &Part| (p.location + Dd::from_product(p.scale, p.law.quantile(probability))).to_f64();
+        let (mut low, mut high) =
+            self.parts.iter().map(of_part).fold((f64::INFINITY, f64::NEG_INFINITY), |(l, h), q| (l.min(q), h.max(q)));
         for _ in 0..200 {
             let middle = 0.5 * (low + high);
             if !(middle > low && middle < high) {
@@ -143,10 +123,7 @@ impl Mixture {
         let logs: Vec<f64> = self
             .parts
             .iter()
-            .map(|p| {
-                float::ln(p.weight) + p.law.log_density((y - p.location).to_f64() / p.scale)
-                    - float::ln(p.scale)
-            })
+            .map(|p| float::ln(p.weight) + p.law.log_density((y - p.location).to_f64() / p.scale) - float::ln(p.scale))
             .collect();
         let top = logs.iter().copied().fold(f64::NEG_INFINITY, f64::max);
         if !top.is_finite() {
@@ -189,26 +166,14 @@ impl Predictor<'_> {
     /// Curve and new indication at a place, from one evaluation of the basis.
     pub fn both(&self, argument: f64, influences: &[f64]) -> (Mixture, Mixture) {
         let row = self.shape.row(argument, influences);
-        let new = NewIndication {
-            noise_share: 1.0,
-            known_variance: 0.0,
-        };
-        (
-            self.at_row(&row, argument, NewIndication::default()),
-            self.at_row(&row, argument, new),
-        )
+        let new = NewIndication { noise_share: 1.0, known_variance: 0.0 };
+        (self.at_row(&row, argument, NewIndication::default()), self.at_row(&row, argument, new))
     }
 
     /// The mean curve and its slope at a place.
     pub fn mean_and_slope(&self, argument: f64, influences: &[f64]) -> (Dd, Dd) {
         let (row, slope) = self.shape.row_with_slope(argument, influences);
-        let mean = |row: &[Dd]| {
-            self.posterior
-                .components
-                .iter()
-                .map(|c| c.location_at(row) * c.weight)
-                .sum()
-        };
+        let mean = |row: &[Dd]| self.posterior.components.iter().map(|c| c.location_at(row) * c.weight).sum();
         (mean(&row), mean(&slope))
     }
 

@@ -33,13 +33,7 @@ pub struct Prior {
 impl Prior {
     /// The flat prior.
     pub fn flat() -> Prior {
-        Prior {
-            rows: Vec::new(),
-            over_sigma: false,
-            log_determinant: Some(0.0),
-            rest: Dd::ZERO,
-            rank: 0,
-        }
+        Prior { rows: Vec::new(), over_sigma: false, log_determinant: Some(0.0), rest: Dd::ZERO, rank: 0 }
     }
 
     /// From the visit's `known_before`. `design` holds the basis functions at the rows of the fit (for the scales of a
@@ -60,51 +54,26 @@ impl Prior {
             let place = format!("model.known_before[{index}]");
             let block = match kind {
                 KnownBefore::Flat => continue,
-                KnownBefore::Conjugate {
-                    mean,
-                    covariance_over_variance,
-                } if known_informed(known) == 1 => {
+                KnownBefore::Conjugate { mean, covariance_over_variance } if known_informed(known) == 1 => {
                     prior.over_sigma = true;
                     covariance_block(mean, covariance_over_variance, shape, None, &place)?
                 }
-                KnownBefore::Shrinkage {
-                    precision: NumberOr::Number(b),
-                    basis,
-                    intercept,
-                } if is_known(sigma) => {
+                KnownBefore::Shrinkage { precision: NumberOr::Number(b), basis, intercept } if is_known(sigma) => {
                     shrinkage_block(*b, *basis, *intercept, shape, design, &place)?
                 }
-                KnownBefore::Coefficients {
-                    terms,
-                    mean,
-                    covariance: Some(covariance),
-                    ..
-                } if is_known(sigma) => {
+                KnownBefore::Coefficients { terms, mean, covariance: Some(covariance), .. } if is_known(sigma) => {
                     let mean = complete(mean, &place)?;
                     covariance_block(&mean, covariance, shape, terms.as_deref(), &place)?
                 }
-                KnownBefore::Coefficients {
-                    terms,
-                    mean,
-                    standard_uncertainty,
-                    ..
-                } if is_known(sigma) => coefficient_block(
-                    terms.as_deref(),
-                    mean,
-                    standard_uncertainty.as_deref(),
-                    shape,
-                    &place,
-                )?,
+                KnownBefore::Coefficients { terms, mean, standard_uncertainty, .. } if is_known(sigma) => {
+                    coefficient_block(terms.as_deref(), mean, standard_uncertainty.as_deref(), shape, &place)?
+                }
                 _ => {
                     left.push(place);
                     continue;
                 }
             };
-            single = if prior.rows.is_empty() {
-                Some(block.log_determinant)
-            } else {
-                None
-            };
+            single = if prior.rows.is_empty() { Some(block.log_determinant) } else { None };
             prior.rows.extend(block.rows);
         }
         prior.measure(shape.columns(), single)?;
@@ -122,9 +91,8 @@ impl Prior {
             return Ok(());
         }
         // Several statements together: a proper normal where they determine every coefficient, else no natural measure.
-        let stacked = DMatrix::from_fn(self.rows.len().max(p), p + 1, |i, j| {
-            self.rows.get(i).map_or(Dd::ZERO, |r| r[j])
-        });
+        let stacked =
+            DMatrix::from_fn(self.rows.len().max(p), p + 1, |i, j| self.rows.get(i).map_or(Dd::ZERO, |r| r[j]));
         match Factor::new(stacked) {
             Ok(factor) => {
                 self.rank = p;
@@ -151,10 +119,7 @@ fn is_known(sigma: Sigma) -> bool {
 }
 
 fn known_informed(known: &[KnownBefore]) -> usize {
-    known
-        .iter()
-        .filter(|k| !matches!(k, KnownBefore::Flat))
-        .count()
+    known.iter().filter(|k| !matches!(k, KnownBefore::Flat)).count()
 }
 
 /// A row of p + 1 zeros.
@@ -173,11 +138,7 @@ fn shrinkage_block(
 ) -> Result<Block, Problem> {
     if !(b > 0.0 && b.is_finite()) {
         let sentence = format!("The precision of the shrinkage is {b}; it must be positive.");
-        return Err(Problem::error(
-            "precision_not_positive",
-            format!("{place}.precision"),
-            sentence,
-        ));
+        return Err(Problem::error("precision_not_positive", format!("{place}.precision"), sentence));
     }
     let (p, root, constant) = (shape.columns(), Dd::from(b).sqrt(), shape.constant());
     let mut rows = Vec::new();
@@ -208,47 +169,34 @@ fn shrinkage_block(
                 "The term {} does not vary over the points, so shrinkage on the standardised basis has no scale for it.",
                 shape.terms()[j]
             );
-            return Err(Problem::error("term_without_variation", place, sentence)
-                .with("term", shape.terms()[j].as_str()));
+            return Err(
+                Problem::error("term_without_variation", place, sentence).with("term", shape.terms()[j].as_str())
+            );
         }
         let mut row = zeros(p);
         row[j] = root * scale;
         push(row, root * scale);
     }
-    Ok(Block {
-        rows,
-        log_determinant,
-    })
+    Ok(Block { rows, log_determinant })
 }
 
 /// Mean and standard deviation (divisor n) of a column of the design.
 fn mean_and_deviation(design: &[Vec<Dd>], column: usize) -> (Dd, Dd) {
     let n = Dd::from(design.len() as f64);
     let mean = design.iter().map(|row| row[column]).sum::<Dd>() / n;
-    let variance = design
-        .iter()
-        .map(|row| (row[column] - mean) * (row[column] - mean))
-        .sum::<Dd>()
-        / n;
+    let variance = design.iter().map(|row| (row[column] - mean) * (row[column] - mean)).sum::<Dd>() / n;
     (mean, variance.sqrt())
 }
 
 /// Columns of the coefficients named, all of the shape where none are.
-fn columns_of(
-    terms: Option<&[String]>,
-    shape: &dyn Shape,
-    place: &str,
-) -> Result<Vec<usize>, Problem> {
+fn columns_of(terms: Option<&[String]>, shape: &dyn Shape, place: &str) -> Result<Vec<usize>, Problem> {
     let Some(terms) = terms else {
         return Ok((0..shape.columns()).collect());
     };
     let mut columns = Vec::with_capacity(terms.len());
     for term in terms {
         let squeezed: String = term.split_whitespace().collect();
-        let found = shape
-            .terms()
-            .iter()
-            .position(|t| t.split_whitespace().collect::<String>() == squeezed);
+        let found = shape.terms().iter().position(|t| t.split_whitespace().collect::<String>() == squeezed);
         match found {
             Some(column) if !columns.contains(&column) => columns.push(column),
             _ => {
@@ -256,12 +204,8 @@ fn columns_of(
                     "What was known before names the term {term}, which is not in the shape, or stands there twice: the shape has {}.",
                     shape.terms().join(", ")
                 );
-                return Err(Problem::error(
-                    "prior_term_unknown",
-                    format!("{place}.terms"),
-                    sentence,
-                )
-                .with("term", term.as_str()));
+                return Err(Problem::error("prior_term_unknown", format!("{place}.terms"), sentence)
+                    .with("term", term.as_str()));
             }
         }
     }
@@ -269,22 +213,18 @@ fn columns_of(
 }
 
 fn wrong_length(place: &str, expected: usize) -> Problem {
-    let sentence =
-        format!("What was known before needs {expected} entries here, one for each of its terms.");
+    let sentence = format!("What was known before needs {expected} entries here, one for each of its terms.");
     Problem::error("prior_length", place, sentence).with("expected", expected)
 }
 
 fn complete(mean: &[Option<f64>], place: &str) -> Result<Vec<f64>, Problem> {
-    mean.iter()
-        .copied()
-        .collect::<Option<Vec<f64>>>()
-        .ok_or_else(|| {
-            Problem::error(
-                "prior_mean_missing",
-                format!("{place}.mean"),
-                "With a covariance every mean must be given: fill in the missing ones.",
-            )
-        })
+    mean.iter().copied().collect::<Option<Vec<f64>>>().ok_or_else(|| {
+        Problem::error(
+            "prior_mean_missing",
+            format!("{place}.mean"),
+            "With a covariance every mean must be given: fill in the missing ones.",
+        )
+    })
 }
 
 /// Independent coefficients with their standard uncertainties.
@@ -314,11 +254,7 @@ fn coefficient_block(
                 "The stated uncertainty of the coefficient of {} is {u}; it must be positive.",
                 shape.terms()[column]
             );
-            return Err(Problem::error(
-                "prior_uncertainty",
-                format!("{place}.standard_uncertainty"),
-                sentence,
-            ));
+            return Err(Problem::error("prior_uncertainty", format!("{place}.standard_uncertainty"), sentence));
         }
         let mut row = zeros(shape.columns());
         row[column] = Dd::ONE / Dd::from(u);
@@ -326,10 +262,7 @@ fn coefficient_block(
         log_determinant -= 2.0 * float::ln(u);
         rows.push(row);
     }
-    Ok(Block {
-        rows,
-        log_determinant,
-    })
+    Ok(Block { rows, log_determinant })
 }
 
 /// Coefficients with a covariance C: rows [G⁻¹ | G⁻¹m] with C = G Gᵀ.
@@ -370,11 +303,6 @@ fn covariance_block(
             row
         })
         .collect();
-    let log_determinant = (0..k)
-        .map(|i| -2.0 * float::ln(root[(i, i)].to_f64()))
-        .sum();
-    Ok(Block {
-        rows,
-        log_determinant,
-    })
+    let log_determinant = (0..k).map(|i| -2.0 * float::ln(root[(i, i)].to_f64())).sum();
+    Ok(Block { rows, log_determinant })
 }

@@ -31,11 +31,7 @@ pub enum Argument {
 
 impl From<f64> for Argument {
     fn from(value: f64) -> Argument {
-        if value.is_finite() {
-            Argument::Number(value)
-        } else {
-            Argument::Text(value.to_string())
-        }
+        if value.is_finite() { Argument::Number(value) } else { Argument::Text(value.to_string()) }
     }
 }
 
@@ -74,19 +70,8 @@ pub struct Problem {
 
 impl Problem {
     /// A message of any level.
-    pub fn new(
-        level: Level,
-        code: &str,
-        place: impl Into<String>,
-        sentence: impl Into<String>,
-    ) -> Problem {
-        Problem {
-            level,
-            code: code.to_owned(),
-            args: BTreeMap::new(),
-            place: place.into(),
-            sentence: sentence.into(),
-        }
+    pub fn new(level: Level, code: &str, place: impl Into<String>, sentence: impl Into<String>) -> Problem {
+        Problem { level, code: code.to_owned(), args: BTreeMap::new(), place: place.into(), sentence: sentence.into() }
     }
 
     /// Something that could not be computed or used.

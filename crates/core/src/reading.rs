@@ -43,10 +43,7 @@ impl Scope {
     fn extent(&self, widths: f64) -> [f64; 2] {
         let (low, high) = self.range;
         let more = widths * (high - low);
-        [
-            (low - more).max(self.hard_limits.0),
-            (high + more).min(self.hard_limits.1),
-        ]
+        [(low - more).max(self.hard_limits.0), (high + more).min(self.hard_limits.1)]
     }
 }
 
@@ -87,26 +84,16 @@ impl Reader<'_> {
             }
         };
         match self.orientation {
-            Orientation::IndicationFromReference => {
-                self.invert(mean, influences, new, reading, &mut value)
-            }
+            Orientation::IndicationFromReference => self.invert(mean, influences, new, reading, &mut value),
             _ => self.predict(mean, influences, new, reading, &mut value),
         }
         value
     }
 
     /// Checks a reading and says what it adds to the curve.
-    fn new_indication(
-        &self,
-        reading: &Reading,
-        messages: &mut Vec<Problem>,
-    ) -> Result<NewIndication, Problem> {
+    fn new_indication(&self, reading: &Reading, messages: &mut Vec<Problem>) -> Result<NewIndication, Problem> {
         if reading.indications.is_empty() {
-            return Err(Problem::error(
-                "reading_empty",
-                "indications",
-                "Type what the instrument shows.",
-            ));
+            return Err(Problem::error("reading_empty", "indications", "Type what the instrument shows."));
         }
         if reading.indications.iter().any(|y| !y.is_finite()) {
             return Err(Problem::error(
@@ -124,20 +111,10 @@ impl Reader<'_> {
                 format!("{words} is {u}; it must be zero or positive."),
             )),
         };
-        let resolution = checked(
-            reading.resolution,
-            "resolution",
-            "The resolution of the reading",
-        )?;
-        let own = checked(
-            reading.indication_uncertainty,
-            "indication_uncertainty",
-            "The uncertainty of the reading",
-        )?;
+        let resolution = checked(reading.resolution, "resolution", "The resolution of the reading")?;
+        let own = checked(reading.indication_uncertainty, "indication_uncertainty", "The uncertainty of the reading")?;
         if let Some(known) = reading.known
-            && !(known.standard_uncertainty > 0.0
-                && known.standard_uncertainty.is_finite()
-                && known.mean.is_finite())
+            && !(known.standard_uncertainty > 0.0 && known.standard_uncertainty.is_finite() && known.mean.is_finite())
         {
             return Err(Problem::error(
                 "reading_known",
@@ -147,10 +124,7 @@ impl Reader<'_> {
         }
         let rounding = resolution * resolution / 12.0;
         if reading.indication_uncertainty.is_some() {
-            return Ok(NewIndication {
-                noise_share: 0.0,
-                known_variance: own * own + rounding,
-            });
+            return Ok(NewIndication { noise_share: 0.0, known_variance: own * own + rounding });
         }
         if self.sigma == Sigma::Known(0.0) {
             messages.push(Problem::warning(
@@ -159,21 +133,11 @@ impl Reader<'_> {
                 "Every point has its own uncertainty, but nothing is known of the new reading's: state it, or only the curve's uncertainty is included.",
             ));
         }
-        Ok(NewIndication {
-            noise_share: 1.0 / reading.indications.len() as f64,
-            known_variance: rounding,
-        })
+        Ok(NewIndication { noise_share: 1.0 / reading.indications.len() as f64, known_variance: rounding })
     }
 
     /// The value by inversion.
-    fn invert(
-        &self,
-        mean: Dd,
-        influences: &[f64],
-        new: NewIndication,
-        reading: &Reading,
-        value: &mut Value,
-    ) {
+    fn invert(&self, mean: Dd, influences: &[f64], new: NewIndication, reading: &Reading, value: &mut Value) {
         let extent = self.scope.extent(1.0);
         if !(extent[1] > extent[0]) {
             value.messages.push(Problem::error(
@@ -188,40 +152,21 @@ impl Reader<'_> {
             ((f - mean).to_f64(), slope.to_f64())
         };
         let (found, near) = solutions(extent[0], extent[1], &gap);
-        value.solutions = found
-            .iter()
-            .map(|s| self.linearised(*s, influences, new))
-            .collect();
+        value.solutions = found.iter().map(|s| self.linearised(*s, influences, new)).collect();
         let log_density = |x: f64| {
             let indication = self.predictor.indication(x, influences, new);
             indication.log_density(mean) + known_log_density(reading.known, x)
         };
-        if found.iter().any(|s| {
-            !(self
-                .predictor
-                .indication(s.x, influences, new)
-                .parts
-                .iter()
-                .all(|p| p.scale > 0.0))
-        }) {
+        if found.iter().any(|s| !(self.predictor.indication(s.x, influences, new).parts.iter().all(|p| p.scale > 0.0)))
+        {
             value.messages.push(collapsed());
             value.linearised = value.solutions.first().cloned();
             return;
         }
-        let mut seeds: Vec<Seed> = value
-            .solutions
-            .iter()
-            .map(|s| Seed {
-                x: s.estimate,
-                width: s.scale,
-            })
-            .collect();
+        let mut seeds: Vec<Seed> = value.solutions.iter().map(|s| Seed { x: s.estimate, width: s.scale }).collect();
         seeds.retain(|s| s.width.is_finite() && s.width > 0.0);
         seeds.extend(near);
-        seeds.extend(reading.known.map(|k| Seed {
-            x: k.mean,
-            width: k.standard_uncertainty,
-        }));
+        seeds.extend(reading.known.map(|k| Seed { x: k.mean, width: k.standard_uncertainty }));
         let Some(density) = ValueDensity::new(extent, &log_density, &seeds) else {
             value.messages.push(Problem::error(
                 "reading_impossible",
@@ -252,10 +197,7 @@ impl Reader<'_> {
         Linearised {
             estimate: at.x,
             scale: scale_of(&indication) / slope,
-            standard_uncertainty: indication
-                .standard_deviation()
-                .map(|s| s / slope)
-                .filter(|s| s.is_finite()),
+            standard_uncertainty: indication.standard_deviation().map(|s| s / slope).filter(|s| s.is_finite()),
             degrees_of_freedom: law_of(&indication).degrees_of_freedom(),
             slope: at.slope,
         }
@@ -275,15 +217,9 @@ impl Reader<'_> {
             return;
         }
         let widened = density.interval_when_widened(outer, log_density, self.scope.coverage);
-        let moved = (widened[0] - report.interval[0])
-            .abs()
-            .max((widened[1] - report.interval[1]).abs());
-        let unit = nearest(&value.solutions, report.median)
-            .map(|s| s.scale)
-            .filter(|s| s.is_finite());
-        let unit = unit
-            .or(report.standard_uncertainty)
-            .unwrap_or(f64::INFINITY);
+        let moved = (widened[0] - report.interval[0]).abs().max((widened[1] - report.interval[1]).abs());
+        let unit = nearest(&value.solutions, report.median).map(|s| s.scale).filter(|s| s.is_finite());
+        let unit = unit.or(report.standard_uncertainty).unwrap_or(f64::INFINITY);
         if moved > 0.01 * unit {
             value.flags.push("slope_too_uncertain");
             value.messages.push(Problem::warning(
@@ -295,36 +231,19 @@ impl Reader<'_> {
     }
 
     /// The value by prediction, where it is a function of the indication.
-    fn predict(
-        &self,
-        mean: Dd,
-        influences: &[f64],
-        new: NewIndication,
-        reading: &Reading,
-        value: &mut Value,
-    ) {
+    fn predict(&self, mean: Dd, influences: &[f64], new: NewIndication, reading: &Reading, value: &mut Value) {
         let argument = mean.to_f64();
         let correction = self.orientation == Orientation::CorrectionFromIndication;
         // The resolution enters through the slope of the value with respect to the indication.
         let (_, slope) = self.predictor.mean_and_slope(argument, influences);
         let slope = slope + if correction { Dd::ONE } else { Dd::ZERO };
         let through = (slope * slope).to_f64();
-        let scaled = NewIndication {
-            noise_share: new.noise_share,
-            known_variance: new.known_variance * through,
-        };
+        let scaled = NewIndication { noise_share: new.noise_share, known_variance: new.known_variance * through };
         let mut mixture = self.predictor.indication(argument, influences, scaled);
         if correction {
-            mixture
-                .parts
-                .iter_mut()
-                .for_each(|part| part.location += mean);
+            mixture.parts.iter_mut().for_each(|part| part.location += mean);
         }
-        if mixture
-            .parts
-            .iter()
-            .any(|p| !p.location.is_finite() || !p.scale.is_finite())
-        {
+        if mixture.parts.iter().any(|p| !p.location.is_finite() || !p.scale.is_finite()) {
             value.messages.push(Problem::error(
                 "reading_outside_domain",
                 "indications",
@@ -344,36 +263,15 @@ impl Reader<'_> {
             slope: slope.to_f64(),
         };
         value.solutions = vec![linearised];
-        let (centre, reach) = (
-            mixture.location(),
-            40.0 * mixture.interval(self.scope.coverage)[1] - 40.0 * mixture.location(),
-        );
-        let known = reading.known.unwrap_or(KnownValue {
-            mean: centre,
-            standard_uncertainty: 0.0,
-        });
-        let low = (centre - reach)
-            .min(known.mean - 10.0 * known.standard_uncertainty)
-            .max(self.scope.hard_limits.0);
-        let high = (centre + reach)
-            .max(known.mean + 10.0 * known.standard_uncertainty)
-            .min(self.scope.hard_limits.1);
-        let log_density =
-            |x: f64| mixture.log_density(Dd::from(x)) + known_log_density(reading.known, x);
-        let seeds = [
-            Seed {
-                x: centre,
-                width: scale_of(&mixture),
-            },
-            Seed {
-                x: known.mean,
-                width: known.standard_uncertainty,
-            },
-        ];
-        let Some(density) = (high > low)
-            .then(|| ValueDensity::new([low, high], &log_density, &seeds))
-            .flatten()
-        else {
+        let (centre, reach) =
+            (mixture.location(), 40.0 * mixture.interval(self.scope.coverage)[1] - 40.0 * mixture.location());
+        let known = reading.known.unwrap_or(KnownValue { mean: centre, standard_uncertainty: 0.0 });
+        let low = (centre - reach).min(known.mean - 10.0 * known.standard_uncertainty).max(self.scope.hard_limits.0);
+        let high = (centre + reach).max(known.mean + 10.0 * known.standard_uncertainty).min(self.scope.hard_limits.1);
+        let log_density = |x: f64| mixture.log_density(Dd::from(x)) + known_log_density(reading.known, x);
+        let seeds =
+            [Seed { x: centre, width: scale_of(&mixture) }, Seed { x: known.mean, width: known.standard_uncertainty }];
+        let Some(density) = (high > low).then(|| ValueDensity::new([low, high], &log_density, &seeds)).flatten() else {
             value.messages.push(Problem::error(
                 "reading_impossible",
                 "indications",
@@ -381,9 +279,7 @@ impl Reader<'_> {
             ));
             return;
         };
-        let cut = reading.known.is_some()
-            || low == self.scope.hard_limits.0
-            || high == self.scope.hard_limits.1;
+        let cut = reading.known.is_some() || low == self.scope.hard_limits.0 || high == self.scope.hard_limits.1;
         let mut described = density.describe(self.scope.coverage);
         if !cut {
             // Uncut and with nothing else known the closed form holds.
@@ -418,10 +314,7 @@ impl Reader<'_> {
             interval: described.interval,
             shortest_interval: described.shortest,
             highest_density: described.highest_density,
-            density: Density {
-                x: described.drawn.0,
-                density: described.drawn.1,
-            },
+            density: Density { x: described.drawn.0, density: described.drawn.1 },
             extent,
             relative_density_at_ends: described.at_ends,
             log_predictive_mean: Some(described.log_mean),
@@ -461,26 +354,15 @@ impl Reader<'_> {
         let (unit, median, half) = (self.units.0, report.median, report.expanded_uncertainty);
         let [low, high] = report.interval;
         report.display_interval = display::interval(low, high, unit);
-        let arms = [
-            display::to_match(high - median, half),
-            display::to_match(median - low, half),
-        ];
-        let plain =
-            !value.flags.contains(&"more_than_one_mode") && !value.flags.contains(&"unattainable");
+        let arms = [display::to_match(high - median, half), display::to_match(median - low, half)];
+        let plain = !value.flags.contains(&"more_than_one_mode") && !value.flags.contains(&"unattainable");
         report.display = if plain && arms[0] == arms[1] {
             display::value_with_uncertainty(median, half, unit)
         } else if plain {
-            format!(
-                "{} {unit} [{}]",
-                display::to_match(median, half),
-                display::interval(low, high, "").trim_end()
-            )
+            format!("{} {unit} [{}]", display::to_match(median, half), display::interval(low, high, "").trim_end())
         } else {
-            let parts: Vec<String> = report
-                .highest_density
-                .iter()
-                .map(|r| display::interval(r[0], r[1], unit))
-                .collect();
+            let parts: Vec<String> =
+                report.highest_density.iter().map(|r| display::interval(r[0], r[1], unit)).collect();
             parts.join(" or ")
         };
         let range = self.scope.range;
@@ -501,39 +383,20 @@ impl Reader<'_> {
 
     /// Where u comes from: the new reading, its resolution, the curve.
     fn budget(&self, influences: &[f64], new: NewIndication, value: &Value) -> Vec<BudgetLine> {
-        let Some(linearised) = value
-            .linearised
-            .as_ref()
-            .filter(|l| l.scale.is_finite() && l.scale > 0.0)
-        else {
+        let Some(linearised) = value.linearised.as_ref().filter(|l| l.scale.is_finite() && l.scale > 0.0) else {
             return Vec::new();
         };
         let inverted = self.orientation == Orientation::IndicationFromReference;
-        let place = if inverted {
-            linearised.estimate
-        } else {
-            value.mean_indication
-        };
+        let place = if inverted { linearised.estimate } else { value.mean_indication };
         let curve = scale_of(&self.predictor.curve(place, influences));
         let repeat = scale_of(&self.predictor.indication(
             place,
             influences,
-            NewIndication {
-                noise_share: new.noise_share,
-                known_variance: 0.0,
-            },
+            NewIndication { noise_share: new.noise_share, known_variance: 0.0 },
         ));
         let repeatability = float::sqrt((repeat * repeat - curve * curve).max(0.0));
-        let sensitivity = if inverted {
-            1.0 / linearised.slope.abs()
-        } else {
-            1.0
-        };
-        let through = if inverted {
-            sensitivity
-        } else {
-            linearised.slope.abs()
-        };
+        let sensitivity = if inverted { 1.0 / linearised.slope.abs() } else { 1.0 };
+        let through = if inverted { sensitivity } else { linearised.slope.abs() };
         let known = float::sqrt(new.known_variance);
         let (kind, law) = match self.sigma {
             Sigma::Known(_) => ("B", "normal"),
@@ -542,15 +405,7 @@ impl Reader<'_> {
         let degrees = linearised.degrees_of_freedom;
         let response = if inverted { self.units.1 } else { self.units.0 };
         let rows = [
-            (
-                "new reading: repeatability",
-                kind,
-                law,
-                repeatability,
-                degrees,
-                sensitivity,
-                response,
-            ),
+            ("new reading: repeatability", kind, law, repeatability, degrees, sensitivity, response),
             (
                 "new reading: resolution and stated uncertainty",
                 "B",
@@ -560,32 +415,22 @@ impl Reader<'_> {
                 through,
                 self.units.1,
             ),
-            (
-                "calibration curve",
-                kind,
-                law,
-                curve,
-                degrees,
-                sensitivity,
-                response,
-            ),
+            ("calibration curve", kind, law, curve, degrees, sensitivity, response),
         ];
         let total = linearised.scale * linearised.scale;
         rows.into_iter()
             .filter(|row| row.3 > 0.0)
-            .map(
-                |(source, kind, distribution, u, nu, sensitivity, unit)| BudgetLine {
-                    source: source.to_owned(),
-                    kind,
-                    distribution,
-                    standard_uncertainty: u,
-                    unit: unit.to_owned(),
-                    degrees_of_freedom: nu,
-                    sensitivity,
-                    contribution: u * sensitivity,
-                    share_of_variance: u * sensitivity * u * sensitivity / total,
-                },
-            )
+            .map(|(source, kind, distribution, u, nu, sensitivity, unit)| BudgetLine {
+                source: source.to_owned(),
+                kind,
+                distribution,
+                standard_uncertainty: u,
+                unit: unit.to_owned(),
+                degrees_of_freedom: nu,
+                sensitivity,
+                contribution: u * sensitivity,
+                share_of_variance: u * sensitivity * u * sensitivity / total,
+            })
             .collect()
     }
 }
@@ -611,26 +456,17 @@ fn collapsed() -> Problem {
 
 /// The solution nearest to a place.
 fn nearest(solutions: &[Linearised], place: f64) -> Option<&Linearised> {
-    solutions.iter().min_by(|a, b| {
-        (a.estimate - place)
-            .abs()
-            .total_cmp(&(b.estimate - place).abs())
-    })
+    solutions.iter().min_by(|a, b| (a.estimate - place).abs().total_cmp(&(b.estimate - place).abs()))
 }
 
 /// ln of what was known of the value itself, up to a constant.
 fn known_log_density(known: Option<KnownValue>, x: f64) -> f64 {
-    known.map_or(0.0, |k| {
-        Law::Normal.log_density((x - k.mean) / k.standard_uncertainty)
-    })
+    known.map_or(0.0, |k| Law::Normal.log_density((x - k.mean) / k.standard_uncertainty))
 }
 
 /// The scale of a mixture, its standard deviation where it has several parts.
 fn scale_of(mixture: &Mixture) -> f64 {
-    mixture
-        .scale()
-        .or_else(|| mixture.standard_deviation())
-        .unwrap_or(f64::NAN)
+    mixture.scale().or_else(|| mixture.standard_deviation()).unwrap_or(f64::NAN)
 }
 
 /// The law of a mixture of one part; normal otherwise.

@@ -74,12 +74,8 @@ impl TermList {
             ));
         }
         if written.len() > MOST_TERMS {
-            let sentence = format!(
-                "The shape has {} terms; at most {MOST_TERMS} can be used.",
-                written.len()
-            );
-            return Err(Problem::error("too_many_terms", "model.terms", sentence)
-                .with("terms", written.len()));
+            let sentence = format!("The shape has {} terms; at most {MOST_TERMS} can be used.", written.len());
+            return Err(Problem::error("too_many_terms", "model.terms", sentence).with("terms", written.len()));
         }
         let mut expressions: Vec<Expression> = Vec::with_capacity(written.len());
         for (text, place) in written.iter().zip(&places) {
@@ -89,27 +85,17 @@ impl TermList {
                     .with("term", text.as_str())
             })?;
             if expressions.contains(&expression) {
-                let sentence =
-                    format!("The term {text} stands in the shape twice: leave one of them out.");
-                return Err(Problem::error("term_twice", place.clone(), sentence)
-                    .with("term", text.as_str()));
+                let sentence = format!("The term {text} stands in the shape twice: leave one of them out.");
+                return Err(Problem::error("term_twice", place.clone(), sentence).with("term", text.as_str()));
             }
             expressions.push(expression);
         }
-        Ok(TermList {
-            written,
-            expressions,
-        })
+        Ok(TermList { written, expressions })
     }
 }
 
 /// Writes the terms of a family.
-fn expand(
-    family: &Family,
-    variable: &str,
-    place: &str,
-    written: &mut Vec<String>,
-) -> Result<(), Problem> {
+fn expand(family: &Family, variable: &str, place: &str, written: &mut Vec<String>) -> Result<(), Problem> {
     match family {
         Family::Polynomial { degree } if *degree < MOST_TERMS as u32 => {
             written.extend((0..=*degree).map(|k| match k {
@@ -120,12 +106,9 @@ fn expand(
             Ok(())
         }
         Family::Polynomial { degree } => {
-            let sentence = format!(
-                "A polynomial of degree {degree} is asked for; the highest degree is {}.",
-                MOST_TERMS - 1
-            );
-            Err(Problem::error("degree_too_high", place, sentence)
-                .with("degree", f64::from(*degree)))
+            let sentence =
+                format!("A polynomial of degree {degree} is asked for; the highest degree is {}.", MOST_TERMS - 1);
+            Err(Problem::error("degree_too_high", place, sentence).with("degree", f64::from(*degree)))
         }
         Family::Spline { .. } | Family::BrokenLine { .. } => Err(Problem::error(
             "shape_not_computed",
@@ -141,17 +124,11 @@ impl Shape for TermList {
     }
 
     fn row(&self, argument: f64, influences: &[f64]) -> Vec<Dd> {
-        self.expressions
-            .iter()
-            .map(|e| e.evaluate(argument, influences))
-            .collect()
+        self.expressions.iter().map(|e| e.evaluate(argument, influences)).collect()
     }
 
     fn row_with_slope(&self, argument: f64, influences: &[f64]) -> (Vec<Dd>, Vec<Dd>) {
-        self.expressions
-            .iter()
-            .map(|e| e.evaluate_with_slope(argument, influences))
-            .unzip()
+        self.expressions.iter().map(|e| e.evaluate_with_slope(argument, influences)).unzip()
     }
 
     fn terms(&self) -> &[String] {
@@ -163,10 +140,7 @@ impl Shape for TermList {
     }
 
     fn units(&self, response: &str, argument: &str, influences: &[String]) -> Vec<String> {
-        self.expressions
-            .iter()
-            .map(|e| e.unit(response, argument, influences))
-            .collect()
+        self.expressions.iter().map(|e| e.unit(response, argument, influences)).collect()
     }
 
     fn constant(&self) -> Option<usize> {
@@ -174,11 +148,7 @@ impl Shape for TermList {
     }
 
     fn influences_used(&self) -> Vec<usize> {
-        let mut used: Vec<usize> = self
-            .expressions
-            .iter()
-            .flat_map(Expression::influence_indices)
-            .collect();
+        let mut used: Vec<usize> = self.expressions.iter().flat_map(Expression::influence_indices).collect();
         used.sort_unstable();
         used.dedup();
         used
@@ -191,13 +161,7 @@ pub fn formula(response: &str, shape: &dyn Shape) -> String {
     let parts: Vec<String> = letters
         .chars()
         .zip(shape.display_terms())
-        .map(|(letter, term)| {
-            if term == "1" {
-                letter.to_string()
-            } else {
-                format!("{letter}·{}", bracketed(&term))
-            }
-        })
+        .map(|(letter, term)| if term == "1" { letter.to_string() } else { format!("{letter}·{}", bracketed(&term)) })
         .collect();
     format!("{response} = {}", parts.join(" + "))
 }
@@ -211,9 +175,5 @@ fn bracketed(term: &str) -> String {
             depth == 0 && i > 0 && matches!(c, '+' | '-' | '\u{2212}')
         })
     };
-    if sum || term.starts_with(['-', '\u{2212}']) {
-        format!("({term})")
-    } else {
-        term.to_owned()
-    }
+    if sum || term.starts_with(['-', '\u{2212}']) { format!("({term})") } else { term.to_owned() }
 }

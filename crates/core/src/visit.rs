@@ -523,14 +523,8 @@ impl Asked {
     /// The same as a reading with its particulars.
     pub fn to_reading(&self) -> Reading {
         match self {
-            Asked::Indications(values) => Reading {
-                indications: values.clone(),
-                ..Reading::default()
-            },
-            Asked::One(value) => Reading {
-                indications: vec![*value],
-                ..Reading::default()
-            },
+            Asked::Indications(values) => Reading { indications: values.clone(), ..Reading::default() },
+            Asked::One(value) => Reading { indications: vec![*value], ..Reading::default() },
             Asked::Reading(reading) => reading.clone(),
         }
     }
