@@ -16,7 +16,7 @@ export function CoveragePanel({ core, state, dispatch, onClose }) {
   const coverage = visit.coverage ?? 0.95;
   const set = (/** @type {number} */ value) => dispatch({ type: 'edit', visit: { ...visit, coverage: value }, what: 'coverage', merge: 'coverage' });
   return (
-    <PanelFrame title="Coverage" onClose={onClose}>
+    <PanelFrame title="Coverage" onClose={onClose} low>
       <p>Every interval on this sheet holds the quantity it is for with this probability.</p>
       <div class="buttons">{[0.9, 0.95, 0.99].map((value) => <button key={value} type="button" aria-pressed={coverage === value} onClick={() => set(value)}>{value * 100} %</button>)}</div>
       <NumberField core={core} label="Other probability" value={coverage} onCommit={(value) => set(value ?? 0.95)} hint="Between 0 and 1, for instance 0.9545." refuse={(value) => (value > 0 && value < 1 ? null : 'A probability lies between 0 and 1.')} />
@@ -33,7 +33,7 @@ export function OrientationPanel({ state, dispatch, onClose }) {
     dispatch({ type: 'edit', visit: withModel(visit, { orientation: other, terms: renamed(visit.model?.terms, orientation, other) }), what: 'which is fitted from which' });
   };
   return (
-    <PanelFrame title="Which is fitted from which" onClose={onClose}>
+    <PanelFrame title="Which is fitted from which" onClose={onClose} low>
       <Choice
         label="Which is fitted from which" hideLabel value={orientation} onChoose={choose}
         options={[
@@ -59,7 +59,7 @@ export function NominalPanel({ core, state, dispatch, onClose }) {
     set({ ...nominal, range: which === 0 ? [value, nominal.range[1]] : [nominal.range[0], value] });
   };
   return (
-    <PanelFrame title="What the instrument should show" onClose={onClose}>
+    <PanelFrame title="What the instrument should show" onClose={onClose} low>
       <Choice
         label="Nominal characteristic" hideLabel value={nominal?.kind ?? 'none'} onChoose={(kind) => set(kinds[kind])}
         options={[

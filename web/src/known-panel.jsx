@@ -20,7 +20,7 @@ export function KnownPanel({ core, state, dispatch, onClose }) {
   });
   const listed = ['flat', 'coefficients', 'shrinkage'].includes(entry.kind);
   return (
-    <PanelFrame title="What was known before" onClose={onClose}>
+    <PanelFrame title="What was known before" onClose={onClose} low>
       <Choice
         label="What was known before" hideLabel value={entry.kind} onChoose={(kind) => kind !== entry.kind && kinds[kind] && set(kinds[kind])}
         options={[

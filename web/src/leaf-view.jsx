@@ -16,7 +16,7 @@ export function LeafView(props) {
     <div class="leaf">
       <header class="leaf-heading">
         <h1>{titleOf(visit)}</h1>
-        <p>{[visit.instrument?.place, `Calibrated ${dateWords(visit.occasion?.date)}`, statesOf(visit, state.entering)].filter(Boolean).join(', ')}</p>
+        <p>{[visit.instrument?.place, `Calibrated ${dateWords(visit.occasion?.date)}`, statesOf(visit, state.entering)].filter(Boolean).join(' · ')}</p>
         {opened && <p class={`badge ${opened.outcome}`}><span aria-hidden="true">{opened.outcome === 'identical' || opened.outcome === 'same' ? '✓ ' : '! '}</span>{outcomeWords(opened.outcome)}</p>}
       </header>
       <main>

@@ -24,7 +24,7 @@ export function NoisePanel({ core, state, dispatch, onClose }) {
   });
   const without = pointsOf(visit).filter((point) => typeof point.indication_uncertainty !== 'number').length;
   return (
-    <PanelFrame title="Noise" onClose={onClose}>
+    <PanelFrame title="Noise" onClose={onClose} low>
       <p>How much a single indication scatters about the curve, as a standard deviation.</p>
       <Choice
         label="Noise" hideLabel value={perPoint ? 'own' : noise.kind} onChoose={(kind) => set(kinds[kind])}

@@ -3,10 +3,10 @@
 import { useEffect, useRef } from 'preact/hooks';
 
 /**
- * Takes the focus when it opens, gives it back when it closes; Escape closes.
- * @param {{ title: string, onClose: () => void, children: import('preact').ComponentChildren, wide?: boolean }} props
+ * Takes the focus when it opens, gives it back when it closes; Escape closes. `low` leaves the answers free on a laptop.
+ * @param {{ title: string, onClose: () => void, children: import('preact').ComponentChildren, wide?: boolean, low?: boolean }} props
  */
-export function PanelFrame({ title, onClose, children, wide }) {
+export function PanelFrame({ title, onClose, children, wide, low }) {
   const frame = useRef(/** @type {HTMLElement|null} */ (null));
   useEffect(() => {
     const before = document.activeElement;
@@ -17,7 +17,7 @@ export function PanelFrame({ title, onClose, children, wide }) {
   }, []);
   return (
     <section
-      ref={frame} class={wide ? 'panel wide' : 'panel'} role="dialog" aria-label={title}
+      ref={frame} class={`panel${wide ? ' wide' : ''}${low ? ' low' : ''}`} role="dialog" aria-label={title}
       onKeyDown={(event) => {
         if (event.key === 'Escape') onClose();
       }}

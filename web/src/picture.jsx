@@ -87,7 +87,7 @@ function Canvas({ core, store, state, dispatch, place, setPlace, said }) {
       <div
         class="read-off-surface" role="slider" tabIndex={0} aria-label="Read off the curve: arrow keys move, up and down go from point to point, Enter opens the point"
         aria-valuemin={first} aria-valuemax={last} aria-valuenow={now} aria-valuetext={said ?? 'not reading off'}
-        onPointerMove={move} onPointerDown={move} onPointerLeave={() => setPlace(null)} onBlur={() => setPlace(null)} onClick={open} onKeyDown={key}
+        onPointerMove={move} onPointerDown={move} onPointerLeave={(event) => event.pointerType === 'mouse' && setPlace(null)} onBlur={() => setPlace(null)} onClick={open} onKeyDown={key}
       />
     </div>
   );

@@ -21,7 +21,7 @@ export function PointPanel({ core, store, state, dispatch, index, onClose }) {
     dispatch({ type: 'edit', visit: withoutPoint(visit, index), what: `row ${index + 1} deleted` });
   };
   return (
-    <PanelFrame title={`Row ${index + 1}`} onClose={onClose}>
+    <PanelFrame title={`Row ${index + 1}`} onClose={onClose} low>
       <p class="lead">{summary(visit, point)}</p>
       <SetAside point={point} onChange={(reason) => edit({ set_aside: reason }, reason === null ? 'used again' : 'set aside')} />
       <Choice

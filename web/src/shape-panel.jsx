@@ -27,7 +27,7 @@ export function ShapePanel({ core, state, dispatch, onClose }) {
   };
   const names = [variable, ...influencesOf(visit)];
   return (
-    <PanelFrame title="Shape" onClose={onClose}>
+    <PanelFrame title="Shape" onClose={onClose} low>
       <p>The curves that are thought of. More terms bend more and need more points. At present: <strong>{report?.fit?.formula ?? present}</strong></p>
       <div class="buttons">
         {NAMES.map((name, degree) => {
@@ -61,7 +61,7 @@ export function ShapePanel({ core, state, dispatch, onClose }) {
 function WrongTerms({ problem }) {
   const { term, position } = problem.args;
   const letters = typeof term === 'string' ? [...term] : [];
-  const at = typeof position === 'number' ? position - 1 : null;
+  const at = typeof position === 'number' ? position : null;
   return (
     <div class="trouble">
       {letters.length > 0 && at !== null && <p class="term"><code>{letters.slice(0, at).join('')}<mark>{letters[at] ?? ' '}</mark>{letters.slice(at + 1).join('')}</code></p>}
