@@ -73,7 +73,7 @@ export function NumberField({ core, label, value, onCommit, unit, hint, refuse }
 export function TwoWays({ text, alternatives, onChoose }) {
   return (
     <span class="two-ways">
-      “{text}” is
+      “{text}” can be read as
       {alternatives.map((values) => (
         <button key={values.join()} type="button" class="small" onMouseDown={(event) => event.preventDefault()} onClick={() => onChoose(values)}>{values.map(String).join('; ')}</button>
       ))}

@@ -64,6 +64,7 @@ export function paint(context, scene, frame, inks) {
   context.rect(frame.left, MARGIN.top - 8, frame.width - frame.left - MARGIN.right + 8, frame.height - MARGIN.bottom - MARGIN.top + 8);
   context.clip();
   bands(context, scene, frame, inks);
+  zeroLine(context, scene, frame, inks);
   if (scene.plumb) plumb(context, scene, scene.plumb, frame, inks);
   lines(context, scene, frame, inks);
   marks(context, scene, frame, inks);
@@ -126,7 +127,7 @@ function axes(context, scene, frame, inks) {
   context.textBaseline = 'middle';
   context.textAlign = 'right';
   for (const tick of frame.yTicks) {
-    context.strokeStyle = tick === 0 && scene.signed ? inks.muted : inks.grid;
+    context.strokeStyle = inks.grid;
     stroke(context, [[left, crisp(y(tick))], [right, crisp(y(tick))]]);
     context.fillStyle = inks.muted;
     context.fillText(frame.yFormat(tick), left - 8, y(tick));
@@ -162,6 +163,20 @@ function bands(context, scene, frame, inks) {
   stroke(context, edge('newLo'));
   stroke(context, edge('newHi'));
   area(context, edge('lo'), edge('hi'), inks.band);
+}
+
+/**
+ * Where errors, residuals and corrections are zero: over the bands, so that it can be seen which of them hold it.
+ * @param {CanvasRenderingContext2D} context
+ * @param {Scene} scene
+ * @param {Frame} frame
+ * @param {Inks} inks
+ */
+function zeroLine(context, scene, frame, inks) {
+  if (!scene.signed) return;
+  context.strokeStyle = inks.muted;
+  context.lineWidth = 1;
+  stroke(context, [[frame.left, crisp(frame.y(0))], [frame.width - MARGIN.right, crisp(frame.y(0))]]);
 }
 
 /**

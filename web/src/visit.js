@@ -152,10 +152,12 @@ export function withoutPoint(visit, index) {
  */
 export function withIntake(visit, intake, replace, entering) {
   let next = visit;
-  for (const column of intake.columns) {
+  const isReference = (/** @type {Intake['columns'][number]} */ column) => column.role === 'reference';
+  // The unit of the reference first: the output's is stated only where it is another.
+  for (const column of [...intake.columns.filter(isReference), ...intake.columns.filter((other) => !isReference(other))]) {
     const { role, unit } = column;
     if (role === 'reference' && unit && !next.instrument?.unit) next = withInstrument(next, { unit });
-    if (role === 'indication' && unit && !next.instrument?.output?.unit) next = withOutput(next, { unit });
+    if (role === 'indication' && unit && unit !== next.instrument?.unit && !next.instrument?.output?.unit) next = withOutput(next, { unit });
     if (role && typeof role === 'object' && !influencesOf(next).includes(role.influence)) next = withInfluence(next, role.influence, unit);
   }
   const blank = newPoint(visit, entering);
