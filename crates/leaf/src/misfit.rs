@@ -1,0 +1,211 @@
+//! Sentences about a document that cannot be read: what stands where, and what belongs there.
+
+use crate::document::MOST_BYTES;
+use bandleaf_core::problem::Problem;
+use serde_json::Value;
+use serde_path_to_error::{Path, Segment};
+
+/// More bytes than are read.
+pub(crate) fn too_large(bytes: u64) -> Problem {
+    let sentence = format!(
+        "The visit has {} megabytes, more than the {} that are read: split it into several visits.",
+        bytes / 1_000_000,
+        MOST_BYTES / 1_000_000
+    );
+    Problem::error("too_large", "", sentence).with("bytes", bytes as f64).with("most", MOST_BYTES as f64)
+}
+
+/// Bytes that are no UTF-8.
+pub(crate) fn not_utf8(bytes: &[u8], at: usize) -> Problem {
+    let before = bytes.get(..at).unwrap_or_default();
+    let (line, column) = line_and_column(&String::from_utf8_lossy(before));
+    let sentence =
+        format!("The visit is not UTF-8 text at line {line}, column {column}: save it again with the encoding UTF-8.");
+    Problem::error("not_utf8", "", sentence).with("line", line).with("column", column)
+}
+
+/// A text that is no JSON, or holds something that a visit cannot hold.
+pub(crate) fn not_json(text: &str, error: &serde_path_to_error::Error<serde_json::Error>) -> Problem {
+    syntax(text, &error.path().to_string(), error.inner())
+}
+
+/// Something after the end of the document.
+pub(crate) fn trailing(text: &str, error: &serde_json::Error) -> Problem {
+    syntax(text, "", error)
+}
+
+fn syntax(text: &str, path: &str, error: &serde_json::Error) -> Problem {
+    let before: String = text.lines().take(error.line()).enumerate().fold(String::new(), |mut kept, (index, line)| {
+        if index + 1 == error.line() {
+            let mut end = error.column().min(line.len());
+            while !line.is_char_boundary(end) {
+                end -= 1;
+            }
+            kept.push_str(line.get(..end).unwrap_or_default());
+        }
+        kept
+    });
+    let (line, column) = (error.line(), before.chars().count());
+    let reason = reason(error);
+    let (code, sentence) = if reason.contains("out of range") {
+        let sentence = format!(
+            "The number at line {line}, column {column} is too large to be held (the limit is about 1.8e308): correct it."
+        );
+        ("number_out_of_range", sentence)
+    } else if error.is_eof() {
+        let sentence = format!(
+            "The visit ends too early, at line {line}, column {column} ({reason}): it was cut short, get the whole of it."
+        );
+        ("cut_short", sentence)
+    } else {
+        let sentence =
+            format!("The visit is not readable JSON at line {line}, column {column} ({reason}): correct it there.");
+        ("not_json", sentence)
+    };
+    let place = if path == "." { "" } else { path };
+    Problem::error(code, place, sentence).with("line", line).with("column", column).with("reason", reason)
+}
+
+/// The reader's own words, without the place that it appends.
+fn reason(error: &serde_json::Error) -> String {
+    let text = error.to_string();
+    match text.rfind(" at line ") {
+        Some(end) => text.get(..end).unwrap_or(&text).to_owned(),
+        None => text,
+    }
+}
+
+/// Line and column of the end of a text, both from 1.
+fn line_and_column(before: &str) -> (usize, usize) {
+    let line = before.matches('\n').count() + 1;
+    let column = before.rsplit('\n').next().unwrap_or_default().chars().count() + 1;
+    (line, column)
+}
+
+/// JSON, but no object.
+pub(crate) fn not_a_visit(value: &Value) -> Problem {
+    let sentence = format!("This is {}, not a visit: a visit is an object with points and a model.", described(value));
+    Problem::error("not_a_visit", "", sentence)
+}
+
+/// A document of another kind or of a later version.
+pub(crate) fn other_schema(value: &Value, known: &str) -> Option<Problem> {
+    let schema = value.get("schema").and_then(Value::as_str)?;
+    if schema == known || schema.is_empty() {
+        return None;
+    }
+    let problem = if is_later(schema, known) {
+        let sentence = format!(
+            "The visit is written as {schema}, and this program knows {known} only: open it with a newer program."
+        );
+        Problem::error("newer_schema", "schema", sentence)
+    } else {
+        let sentence = format!("The document calls itself “{}”, not {known}: choose a visit.", shortened(schema));
+        Problem::error("other_schema", "schema", sentence)
+    };
+    Some(problem.with("schema", schema))
+}
+
+/// Whether a schema name is a later version of the known one.
+pub(crate) fn is_later(schema: &str, known: &str) -> bool {
+    let parts =
+        |name: &str| name.rsplit_once('.').map(|(stem, version)| (stem.to_owned(), version.parse::<u64>().ok()));
+    match (parts(schema), parts(known)) {
+        (Some((stem, Some(version))), Some((known_stem, Some(known_version)))) => {
+            stem == known_stem && version > known_version
+        }
+        _ => false,
+    }
+}
+
+/// A field that holds something of another kind than the program computes with.
+pub(crate) fn wrong_kind(value: &Value, error: &serde_path_to_error::Error<serde_json::Error>) -> Problem {
+    let found = at_path(value, error.path()).map(described).unwrap_or_else(|| "something else".to_owned());
+    let place = match error.path().to_string() {
+        path if path == "." => String::new(),
+        path => path,
+    };
+    let reason = error.inner().to_string();
+    let sentence = match expected(&reason) {
+        Some(expected) => {
+            format!("{}: there is {found} where {expected} belongs; correct it.", place_in_words(&place))
+        }
+        None => format!("{}: {reason}; correct it.", place_in_words(&place)),
+    };
+    Problem::error("wrong_kind", place, sentence).with("found", found).with("reason", reason)
+}
+
+fn at_path<'v>(value: &'v Value, path: &Path) -> Option<&'v Value> {
+    path.iter().try_fold(value, |value, segment| match segment {
+        Segment::Seq { index } => value.get(index),
+        Segment::Map { key } => value.get(key),
+        Segment::Enum { .. } | Segment::Unknown => Some(value),
+    })
+}
+
+/// `points[6].indication` as a technician counts: `Point 7, indication`.
+fn place_in_words(place: &str) -> String {
+    let point = place.strip_prefix("points[").and_then(|rest| rest.split_once(']'));
+    match point.and_then(|(index, rest)| Some((index.parse::<u64>().ok()?, rest.trim_start_matches('.')))) {
+        Some((index, "")) => format!("Point {}", index + 1),
+        Some((index, rest)) => format!("Point {}, {rest}", index + 1),
+        None if place.is_empty() => "The visit".to_owned(),
+        None => format!("The field {place} of the visit"),
+    }
+}
+
+fn described(value: &Value) -> String {
+    match value {
+        Value::Null => "nothing (null)".to_owned(),
+        Value::Bool(value) => format!("{value}"),
+        Value::Number(number) => format!("the number {number}"),
+        Value::String(text) => format!("the text “{}”", shortened(text)),
+        Value::Array(entries) => match entries.iter().enumerate().find(|(_, entry)| !entry.is_number()) {
+            Some((index, entry)) if !entry.is_array() => {
+                format!("a list whose entry {} is {}", index + 1, described(entry))
+            }
+            _ => format!("a list of {}", entries.len()),
+        },
+        Value::Object(_) => "an object".to_owned(),
+    }
+}
+
+fn shortened(text: &str) -> String {
+    const MOST: usize = 40;
+    let line: String =
+        text.chars().take(MOST).map(|character| if character.is_control() { ' ' } else { character }).collect();
+    if text.chars().count() > MOST { line + "…" } else { line }
+}
+
+/// What the reader expected, in a technician's words; `None` where its own words are the best there are.
+fn expected(reason: &str) -> Option<String> {
+    if let Some(kind) = reason.strip_prefix("data did not match any variant of untagged enum ") {
+        let words = match kind {
+            "Indication" => "a number or a list of numbers",
+            "Term" | "Terms" => "a term such as \"x^2\", a list of terms or a shape object",
+            "Place" => "a number, or an object with x and influences",
+            "Asked" => "a list of indications, or an object with indications",
+            "NumberOr" => "a number or the word \"integrated\"",
+            _ => return None,
+        };
+        return Some(words.to_owned());
+    }
+    let words = reason.rsplit_once("expected ").map(|(_, words)| words)?;
+    if reason.starts_with("unknown variant") {
+        return Some(words.replace('`', "\""));
+    }
+    let words = match words {
+        "f64" => "a number".to_owned(),
+        "u32" | "u64" | "usize" => "a whole number".to_owned(),
+        "a sequence" => "a list".to_owned(),
+        "a map" => "an object".to_owned(),
+        "a string" => "a text".to_owned(),
+        "a boolean" => "true or false".to_owned(),
+        words if words.starts_with("struct ") => "an object".to_owned(),
+        words if words.contains("tuple of size 2") || words.contains("array of length 2") => {
+            "a list of two numbers".to_owned()
+        }
+        _ => return None,
+    };
+    Some(words)
+}
