@@ -14,7 +14,7 @@ export function About({ core, onClose }) {
       <h2 id="about-title">Bandleaf {core.version()}</h2>
       <p>Calibration curves with honest uncertainty from a handful of points, in one file, without a network. Everything shown is computed on this device from the visit inside; nothing is sent anywhere.</p>
       <p><strong>Caution.</strong> {CAUTION}</p>
-      <p>Licence: MIT or Apache-2.0, as you choose. No warranty of any kind.</p>
+      <p>Licence: MIT. No warranty of any kind.</p>
       <details>
         <summary>Licences of what is inside</summary>
         <pre class="licences" tabIndex={0}>{notices}</pre>

@@ -1,7 +1,7 @@
 // Typed text to numbers, by the core's own rules for one cell; several repeats are written "151; 150; 151".
 
-/** @import { Core, Cell, Point, Visit } from './types.js' */
-import { cellValue, columnsOf, typedText, valueText } from './visit.js';
+/** @import { Core, Cell, Point, Unread, Visit } from './types.js' */
+import { cellValue, columnsOf, pointsOf, typedText, valueText } from './visit.js';
 
 /**
  * @typedef {{ values: number[]|null, alternatives: number[][]|null, sentence: string|null }} Pieces
@@ -54,18 +54,36 @@ export function shownText(core, point, column) {
 /**
  * What cannot be used in a row as it was typed.
  * @param {Core} core
- * @param {Visit} visit
+ * @param {ReturnType<typeof columnsOf>} columns
  * @param {Point} point
  * @returns {{ column: string, label: string, text: string, sentence: string|null, alternatives: number[][]|null }|null}
  */
-export function rowTrouble(core, visit, point) {
-  for (const { id, label } of columnsOf(visit)) {
+export function rowTrouble(core, columns, point) {
+  for (const { id, label } of columns) {
     const text = typedText(point, id) ?? '';
     if (text.trim() === '' || cellValue(point, id) !== null) continue;
     const { values, alternatives, sentence } = readPieces(core, text);
     if (alternatives) return { column: id, label, text, sentence: null, alternatives };
     const several = values && values.length > 1 ? `Only the indication can have several values; ${label} needs one number.` : null;
     return { column: id, label, text, sentence: sentence ?? several, alternatives: null };
+  }
+  return null;
+}
+
+/**
+ * The first row with a cell that cannot be used as it was typed, said with what to do.
+ * @param {Core} core
+ * @param {Visit} visit
+ * @returns {Unread|null}
+ */
+export function firstUnread(core, visit) {
+  const columns = columnsOf(visit);
+  const points = pointsOf(visit);
+  for (let index = 0; index < points.length; index += 1) {
+    const trouble = rowTrouble(core, columns, points[index]);
+    if (!trouble) continue;
+    const sentence = trouble.alternatives ? `“${trouble.text}” can be read in two ways: choose one in the row.` : `“${trouble.text}” in ${trouble.label}: ${trouble.sentence}`;
+    return { row: index + 1, sentence };
   }
   return null;
 }

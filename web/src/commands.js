@@ -143,8 +143,9 @@ export function addIntake(store, intake, replace, source) {
   const { visit, entering } = store.state();
   const what = `${count} ${count === 1 ? 'row' : 'rows'} from ${source}`;
   store.dispatch({ type: 'edit', visit: withIntake(visit, intake, replace, entering), what });
-  const left = more.length > 0 ? ` ${more.length === 1 ? 'One thing was' : `${more.length} things were`} not read as it stands.` : '';
-  say(store, { level: more.length > 0 ? 'warning' : 'note', sentence: `${replace ? 'The sheet now holds' : 'Added'} ${what}.${left}${unitWords(visit, intake)}`, more });
+  const unread = intake.problems.filter((problem) => problem.level !== 'note').length;
+  const left = unread > 0 ? ` ${unread === 1 ? 'One thing' : `${unread} things`} could not be read.` : '';
+  say(store, { level: unread > 0 ? 'warning' : 'note', sentence: `${replace ? 'The sheet now holds' : 'Added'} ${what}.${left}${unitWords(visit, intake)}`, more });
 }
 
 /**

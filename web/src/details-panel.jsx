@@ -1,9 +1,9 @@
 // Instrument, standard and occasion: what a leaf must say to be of use next year.
 
 /** @import { Parts } from './store.js' */
-/** @import { Visit } from './types.js' */
+/** @import { PointState, Visit } from './types.js' */
 import { useState } from 'preact/hooks';
-import { NumberField, TextField } from './fields.jsx';
+import { Choice, NumberField, TextField } from './fields.jsx';
 import { PanelFrame } from './panel.jsx';
 import { notNegative } from './point-panel.jsx';
 import { influencesOf, pointsOf, withEveryPoint, withInfluence, withInstrument, withOccasion, withOutput, withStandard, withoutInfluence } from './visit.js';
@@ -33,6 +33,12 @@ export function DetailsPanel({ core, store, state, dispatch, onClose }) {
         <TextField label="Date" type="date" value={visit.occasion?.date ?? ''} onCommit={(value) => edit('date')((now) => withOccasion(now, { date: value || null }))} />
         <TextField label="By" value={visit.occasion?.by ?? ''} onCommit={(value) => edit('who')((now) => withOccasion(now, { by: value.trim() }))} />
       </div>
+      {pointsOf(visit).length > 0 && (
+        <Choice
+          label="Every row is" value={commonState(visit)} onChoose={(value) => edit('state of every row')((now) => withEveryPoint(now, { state: /** @type {PointState} */ (value) }))}
+          options={[{ value: 'as_found', label: 'as found' }, { value: 'as_left', label: 'as left' }]}
+        />
+      )}
       <TextField label="Notes" rows={3} value={visit.occasion?.notes ?? ''} onCommit={(value) => edit('notes')((now) => withOccasion(now, { notes: value }))} />
       <StandardFields {...{ core, store, state, dispatch }} />
       <Influences {...{ core, store, state, dispatch }} />
@@ -127,6 +133,15 @@ function Influences({ core, store, state, dispatch }) {
       {plain !== '' && !usable && <p class="trouble">A name is one word of letters, digits and underscores, not x or y, and not one that is there.</p>}
     </>
   );
+}
+
+/**
+ * The state of all rows; empty where there are both.
+ * @param {Visit} visit
+ */
+function commonState(visit) {
+  const states = new Set(pointsOf(visit).map((point) => point.state ?? 'as_found'));
+  return states.size === 1 ? [...states][0] : '';
 }
 
 /**

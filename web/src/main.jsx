@@ -9,7 +9,7 @@ import { findDrafts, keepDraft, keptMode } from './drafts.js';
 import { saveFile } from './files.js';
 import { ownTexts } from './own.js';
 import { Sheet } from './sheet.jsx';
-import { createStore } from './store.js';
+import { createStore, refusal } from './store.js';
 import { blankVisit } from './visit.js';
 import { isSound } from './words.js';
 
@@ -54,12 +54,25 @@ function mount() {
  * @returns {{ visit: Visit, origin: string, stage: State['stage'], opened: Opened|null, mode: string }}
  */
 function opening(core, texts) {
-  const opened = core.open_texts(texts);
+  const opened = openedTexts(core, texts);
   const mode = keptMode();
   const blank = blankVisit(today());
   if (!isSound(opened)) return { visit: blank, origin: 'blank', stage: 'altered', opened, mode };
   if (!opened.visit) return { visit: blank, origin: 'blank', stage: 'sheet', opened: null, mode };
   return { visit: opened.visit, origin: core.digest(opened.visit), stage: 'leaf', opened, mode };
+}
+
+/**
+ * @param {Core} core
+ * @param {Texts} texts
+ * @returns {Opened}
+ */
+function openedTexts(core, texts) {
+  try {
+    return core.open_texts(texts);
+  } catch (problem) {
+    return { visit: null, outcome: 'altered', sentence: refusal(problem).sentence, changed: [], field: null };
+  }
 }
 
 /**

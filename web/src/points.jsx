@@ -59,18 +59,17 @@ export function Points({ core, store, state, dispatch }) {
 
 /**
  * @param {Parts & {
- *   index: number, point: Point|undefined, columns: { id: string, label: string }[], known: Known|undefined, hasError: boolean, bothStates: boolean
+ *   index: number, point: Point|undefined, columns: ReturnType<typeof columnsOf>, known: Known|undefined, hasError: boolean, bothStates: boolean
  * }} props
  */
-function Row({ core, store, dispatch, state, index, point, columns, known, hasError, bothStates }) {
-  const { visit } = state;
+function Row({ core, store, dispatch, index, point, columns, known, hasError, bothStates }) {
   return useMemo(() => {
-    const trouble = point ? rowTrouble(core, visit, point) : null;
+    const trouble = point ? rowTrouble(core, columns, point) : null;
     const messages = known?.messages ?? [];
     const aside = point?.set_aside ?? null;
     const marked = trouble !== null || messages.length > 0;
     const width = columns.length + 3 + Number(hasError) + Number(bothStates);
-    const classes = [aside !== null && 'aside', marked && 'marked'].filter(Boolean).join(' ');
+    const classes = [!point && 'blank', aside !== null && 'aside', marked && 'marked'].filter(Boolean).join(' ');
     return (
       <>
         <tr class={classes || undefined}>
@@ -116,6 +115,11 @@ function CellField({ core, store, index, column, point, bad }) {
         setDraft(text);
         clearTimeout(idle.current);
         idle.current = window.setTimeout(() => commitText(core, store, index, column.id, text), IDLE);
+      }}
+      onKeyDown={(event) => {
+        if (event.key !== 'Escape') return;
+        clearTimeout(idle.current);
+        setDraft(null);
       }}
       onFocus={(event) => event.currentTarget.select()} onBlur={leave}
     />

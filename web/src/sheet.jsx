@@ -81,7 +81,7 @@ function OpenPanel(parts) {
  * @param {import('./store.js').Parts} props
  */
 function Spoken({ core, state }) {
-  const { answer, report } = state;
+  const { answer, report, said } = state;
   const value = answer.value;
   const words = value?.value && report ? `Value ${value.value.display}, ${coverageWords(core, report, value)}` : (answer.problem ?? '');
   const [spoken, setSpoken] = useState('');
@@ -89,7 +89,12 @@ function Spoken({ core, state }) {
     const timer = setTimeout(() => setSpoken(words), SPOKEN_AFTER);
     return () => clearTimeout(timer);
   }, [words]);
-  return <p class="unseen" aria-live="polite">{spoken}</p>;
+  return (
+    <>
+      <p class="unseen" aria-live="polite">{spoken}</p>
+      <p class="unseen" aria-live="polite">{said}</p>
+    </>
+  );
 }
 
 /**

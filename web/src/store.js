@@ -2,7 +2,7 @@
 // the store asks the core for whatever follows from the new visit or the new reading, so that nothing shown is stale.
 
 /** @import { Action, Answer, Asked, Core, Notice, Opened, Report, State, Visit } from './types.js' */
-import { readPieces } from './cells.js';
+import { firstUnread, readPieces } from './cells.js';
 import { influencesOf, pointsOf } from './visit.js';
 import { drawnRange } from './picture-range.js';
 
@@ -22,7 +22,7 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
   /** @type {State} */
   let state = {
     visit, origin, revision: 0, past: [], future: [], lastMerge: null, saved: null,
-    report: null, drawn: null, asFoundCurve: null, busy: false,
+    report: null, drawn: null, asFoundCurve: null, unread: null, busy: false, said: '',
     reading: firstReading(visit), answer: { problem: null, alternatives: null, value: null },
     view: 'error', panel: null, notice: null, notesOpen: false, entering: enteringOf(visit), firstRow: 0,
     opened, stage, drafts: [], mode,
@@ -86,7 +86,7 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
     const [first, last] = drawnRange(next.visit, report);
     const rows = report.fit ? handle.curve(first, last, PLACES) : new Float64Array();
     const asFoundCurve = report.as_found ? (handle.report().as_found?.curve ?? null) : null;
-    return { ...next, report, drawn: { first, last, rows }, asFoundCurve };
+    return { ...next, report, drawn: { first, last, rows }, asFoundCurve, unread: firstUnread(core, next.visit) };
   }
 
   /**
@@ -160,10 +160,18 @@ function reduce(state, action) {
  */
 function edited(state, visit, what, merge) {
   if (visit === state.visit) return state;
-  const kept = { ...state, visit, revision: state.revision + 1, future: [], lastMerge: merge };
+  const kept = { ...state, visit, revision: state.revision + 1, future: [], lastMerge: merge, notice: passing(state.notice), said: '' };
   if (merge !== null && merge === state.lastMerge && state.past.length > 0) return kept;
   const step = { visit: state.visit, origin: state.origin, what, merge };
   return { ...kept, past: [...state.past.slice(1 - STEPS), step] };
+}
+
+/**
+ * A note goes with the next change; a warning or refusal stays until it is closed.
+ * @param {Notice|null} notice
+ */
+function passing(notice) {
+  return notice?.level === 'note' ? null : notice;
 }
 
 /**
@@ -180,7 +188,7 @@ function stepped(state, steps, from, to) {
   return {
     ...state, visit: step.visit, origin: step.origin, revision: state.revision + 1, lastMerge: null,
     [from]: steps.slice(0, -1), [to]: [...state[to], here],
-    notice: { level: 'note', sentence: `${from === 'past' ? 'Undone' : 'Done again'}: ${step.what}.` },
+    notice: passing(state.notice), said: `${from === 'past' ? 'Undone' : 'Done again'}: ${step.what}.`,
   };
 }
 

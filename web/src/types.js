@@ -112,6 +112,7 @@
 /** @typedef {{ level: 'note'|'warning'|'error', sentence: string, more?: string[], recover?: Opened }} Notice */
 /** @typedef {{ text: string, influences: Record<string, string> }} Reading what is typed into the reading field: no part of the visit */
 /** @typedef {{ problem: string|null, alternatives: number[][]|null, value: Value|null }} Answer */
+/** @typedef {{ row: number, sentence: string }} Unread */
 /** @typedef {{ visit: Visit, what: string, origin: string, merge: string|null }} Step */
 /** @typedef {{ key: string, at: string, title: string, revision: number, visit: Visit, origin: string }} Draft */
 /** @typedef {{ first: number, last: number, rows: Float64Array }} Drawn */
@@ -120,7 +121,7 @@
  * Everything the page shows follows from this.
  * @typedef {{
  *   visit: Visit, origin: string, revision: number, past: Step[], future: Step[], lastMerge: string|null, saved: Visit|null,
- *   report: Report|null, drawn: Drawn|null, asFoundCurve: Curve|null, busy: boolean,
+ *   report: Report|null, drawn: Drawn|null, asFoundCurve: Curve|null, unread: Unread|null, busy: boolean, said: string,
  *   reading: Reading, answer: Answer,
  *   view: View, panel: Panel|null, notice: Notice|null, notesOpen: boolean, entering: PointState, firstRow: number,
  *   opened: Opened|null, stage: 'sheet'|'leaf'|'altered', drafts: Draft[], mode: string

@@ -1,7 +1,6 @@
 // Sentences about what is shown. Every number in them comes from the report or from the core's formatting.
 
 /** @import { Core, Opened, Outcome, Problem, Report, State, Value, Visit } from './types.js' */
-import { rowTrouble } from './cells.js';
 import { pointsOf } from './visit.js';
 
 const FLAGS = /** @type {Record<string, string>} */ ({
@@ -62,10 +61,9 @@ export function isReserved(problem) {
  * @returns {{ level: 'error'|'warning'|'note'|'good', lead: string, sentence: string }}
  */
 export function stateSentence(core, state) {
-  const { visit, report, busy } = state;
+  const { visit, report, busy, unread } = state;
   if (busy || !report) return { level: 'note', lead: 'Computing.', sentence: 'The table can be used meanwhile.' };
   if (pointsOf(visit).length === 0) return { level: 'note', lead: 'No points yet.', sentence: 'Type the first reference value and indication, paste cells, or drop a file. The sheet menu has two demos.' };
-  const unread = firstUnread(core, visit);
   if (unread) return { level: 'warning', lead: `Row ${unread.row}.`, sentence: unread.sentence };
   const error = report.messages.find((message) => message.level === 'error');
   if (error) return { level: 'error', lead: report.fit ? 'Look at this.' : 'No curve yet.', sentence: error.sentence };
@@ -148,20 +146,4 @@ export function outcomeWords(outcome) {
 export function isSound({ outcome, field }) {
   if (outcome === 'newer_program') return field === null;
   return outcome !== 'altered' && outcome !== 'differs';
-}
-
-/**
- * @param {Core} core
- * @param {Visit} visit
- * @returns {{ row: number, sentence: string }|null}
- */
-function firstUnread(core, visit) {
-  const points = pointsOf(visit);
-  for (let index = 0; index < points.length; index += 1) {
-    const trouble = rowTrouble(core, visit, points[index]);
-    if (!trouble) continue;
-    const sentence = trouble.alternatives ? `“${trouble.text}” can be read in two ways: choose one in the row.` : `“${trouble.text}” in ${trouble.label}: ${trouble.sentence}`;
-    return { row: index + 1, sentence };
-  }
-  return null;
 }
