@@ -40,7 +40,7 @@ wasm_route() {
 
 # Runs a command with the environment of the WebAssembly build. Paths are remapped so that no builder's path is in the file.
 with_wasm_toolchain() {
-  local route sysroot
+  local route sysroot registry flags home="${CARGO_HOME:-$HOME/.cargo}"
   route="$(wasm_route)"
   (
     if [[ $route == debian ]]; then
@@ -49,8 +49,12 @@ with_wasm_toolchain() {
       export CARGO_TARGET_WASM32_UNKNOWN_UNKNOWN_LINKER
     fi
     sysroot="$(rustc --print sysroot)"
-    CARGO_ENCODED_RUSTFLAGS="$(printf '%s\037' -Ctarget-feature=+simd128 "--remap-path-prefix=$root=/bandleaf" \
-      "--remap-path-prefix=${CARGO_HOME:-$HOME/.cargo}=/cargo")--remap-path-prefix=$sysroot=/rust"
+    # Of several prefixes that match, the compiler takes the last.
+    flags=(-Ctarget-feature=+simd128 "--remap-path-prefix=$root=/bandleaf" "--remap-path-prefix=$sysroot=/rust"
+      "--remap-path-prefix=$home=/cargo")
+    for registry in "$home"/registry/src/*; do flags+=("--remap-path-prefix=$registry=/crates"); done
+    CARGO_ENCODED_RUSTFLAGS="$(printf '\037%s' "${flags[@]}")"
+    CARGO_ENCODED_RUSTFLAGS="${CARGO_ENCODED_RUSTFLAGS#?}"
     export CARGO_ENCODED_RUSTFLAGS
     "$@"
   )
@@ -59,3 +63,6 @@ with_wasm_toolchain() {
 # Browsers for the tests; CHROMIUM and FIREFOX name others.
 chromium_path() { [[ -n ${CHROMIUM:-} ]] && echo "$CHROMIUM" && return; for name in chromium chromium-browser google-chrome; do have "$name" && command -v "$name" && return; done; return 1; }
 firefox_path() { [[ -n ${FIREFOX:-} ]] && echo "$FIREFOX" && return; for name in firefox-esr firefox; do have "$name" && command -v "$name" && return; done; return 1; }
+
+# The release binary, wherever cargo was told to put it.
+native_binary() { echo "${CARGO_TARGET_DIR:-$root/target}/release/bandleaf"; }

@@ -24,7 +24,9 @@ const DAMAGED =
 const ICON =
   "data:image/svg+xml,%3Csvg xmlns='http://www.w3.org/2000/svg' viewBox='0 0 16 16'%3E%3Cpath d='M1 14C4 6 9 3 15 2 14 9 9 13 1 14Z' fill='%23cfe3c8'/%3E%3Cpath d='M1 14C6 8 10 5 15 2' fill='none' stroke='%232f6b3a' stroke-width='1.6'/%3E%3C/svg%3E";
 
-const { values } = parseArgs({ options: { bindings: { type: 'string' }, wasm: { type: 'string' }, out: { type: 'string' }, source: { type: 'string' } } });
+const { values } = parseArgs({
+  options: { bindings: { type: 'string' }, wasm: { type: 'string' }, out: { type: 'string' }, source: { type: 'string' } },
+});
 const bindings = resolve(values.bindings ?? join(web, 'pkg'));
 const source = resolve(values.source ?? join(web, 'src'));
 const out = resolve(values.out ?? join(root, 'dist', 'bandleaf.html'));

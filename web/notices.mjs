@@ -49,7 +49,10 @@ export function chosen(expression) {
     .replace(/[()]/g, ' ')
     .split(/\s+AND\s+/)
     .map((part) => {
-      const choices = part.trim().split(/\s+OR\s+|\//).map((choice) => choice.trim());
+      const choices = part
+        .trim()
+        .split(/\s+OR\s+|\//)
+        .map((choice) => choice.trim());
       const best = PREFERRED.find((licence) => choices.includes(licence));
       if (!best) throw new Error(`No known licence in "${expression}".`);
       return best;
@@ -59,7 +62,11 @@ export function chosen(expression) {
 /** @param {Package} one */
 function copyrightLines(one) {
   const lines = one.texts.flatMap((text) => text.split('\n')).map((line) => line.trim().replace(/\s+/g, ' '));
-  const found = lines.filter((line) => /^(Portions )?(©|\(c\)|Copyright (\(c\)|©|\d|[A-Z]))/i.test(line) && !/copyright (owner|notice|holder|license|statement)|\[yyyy\]|\{yyyy\}/i.test(line));
+  const found = lines.filter(
+    (line) =>
+      /^(Portions )?(©|\(c\) ?\d|Copyright (\(c\)|©|\d|[A-Z]))/i.test(line) &&
+      !/copyright (owner|notice|holder|license|statement)|\[yyyy\]|\{yyyy\}/i.test(line),
+  );
   return [...new Set(found)];
 }
 
@@ -101,11 +108,33 @@ const LICENCE_BEGINS = {
  * @returns {Package[]}
  */
 export function crates(root) {
-  const cargo = (/** @type {string[]} */ ...args) => execFileSync('cargo', args, { cwd: root, encoding: 'utf8', maxBuffer: 1 << 28, stdio: ['ignore', 'pipe', 'ignore'] });
-  const tree = cargo('tree', '--locked', '--offline', '--package', 'bandleaf-wasm', '--target', 'wasm32-unknown-unknown', '--edges', 'normal,no-proc-macro', '--prefix', 'none', '--format', '{p}');
-  const inside = new Set(tree.trim().split('\n').map((line) => line.split(' ').slice(0, 2).join(' ')));
+  const cargo = (/** @type {string[]} */ ...args) =>
+    execFileSync('cargo', args, { cwd: root, encoding: 'utf8', maxBuffer: 1 << 28, stdio: ['ignore', 'pipe', 'ignore'] });
+  const tree = cargo(
+    'tree',
+    '--locked',
+    '--offline',
+    '--package',
+    'bandleaf-wasm',
+    '--target',
+    'wasm32-unknown-unknown',
+    '--edges',
+    'normal,no-proc-macro',
+    '--prefix',
+    'none',
+    '--format',
+    '{p}',
+  );
+  const inside = new Set(
+    tree
+      .trim()
+      .split('\n')
+      .map((line) => line.split(' ').slice(0, 2).join(' ')),
+  );
   /** @type {{ packages: { name: string, version: string, license: string, manifest_path: string, source: string|null }[] }} */
-  const metadata = JSON.parse(cargo('metadata', '--locked', '--offline', '--format-version', '1', '--filter-platform', 'wasm32-unknown-unknown'));
+  const metadata = JSON.parse(
+    cargo('metadata', '--locked', '--offline', '--format-version', '1', '--filter-platform', 'wasm32-unknown-unknown'),
+  );
   return metadata.packages
     .filter((one) => one.source && inside.has(`${one.name} v${one.version}`))
     .map((one) => ({ name: one.name, version: one.version, licence: one.license, texts: licenceFiles(dirname(one.manifest_path)) }));
@@ -118,7 +147,9 @@ export function crates(root) {
  * @returns {Package[]}
  */
 export function npmPackages(web, inputs) {
-  const names = inputs.map((input) => /node_modules\/((?:@[^/]+\/)?[^/]+)\/(?!.*node_modules\/)/.exec(input)?.[1]).filter((name) => name !== undefined);
+  const names = inputs
+    .map((input) => /node_modules\/((?:@[^/]+\/)?[^/]+)\/(?!.*node_modules\/)/.exec(input)?.[1])
+    .filter((name) => name !== undefined);
   return [...new Set(names)].sort().map((name) => {
     const directory = join(web, 'node_modules', name);
     const { version, license } = JSON.parse(readFileSync(join(directory, 'package.json'), 'utf8'));

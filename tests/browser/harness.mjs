@@ -1,0 +1,161 @@
+// Opens the built page from file:// in Chromium and Firefox, each time in a new profile, and records what the console says.
+//
+// puppeteer-core, because one driver serves both: Chromium over its own protocol, Firefox over WebDriver BiDi.
+
+import { execFileSync } from 'node:child_process';
+import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
+import { createRequire } from 'node:module';
+import { tmpdir } from 'node:os';
+import { dirname, join } from 'node:path';
+import { fileURLToPath, pathToFileURL } from 'node:url';
+
+// The npm packages live in web/, so that there is one lock file.
+const fromWeb = createRequire(new URL('../../web/package.json', import.meta.url));
+const { default: puppeteer } = await import(pathToFileURL(fromWeb.resolve('puppeteer-core')).href);
+
+/** @typedef {'chromium'|'firefox'} BrowserName */
+/** @typedef {import('puppeteer-core').Page & { complaints: string[] }} Tab */
+
+export const root = dirname(dirname(dirname(fileURLToPath(import.meta.url))));
+export const pageFile = join(root, 'dist', 'bandleaf.html');
+export const binary = join(process.env.CARGO_TARGET_DIR ?? join(root, 'target'), 'release', 'bandleaf');
+
+/** What is left of a 1366×768 laptop's screen inside a browser window. */
+export const LAPTOP = { width: 1366, height: 625 };
+export const TABLET_UPRIGHT = { width: 768, height: 1024, hasTouch: true };
+export const PHONE = { width: 390, height: 844, hasTouch: true };
+
+/** Both browsers; BROWSERS=chromium limits a run. @type {BrowserName[]} */
+export const browserNames = /** @type {BrowserName[]} */ ((process.env.BROWSERS ?? 'chromium firefox').split(/[ ,]+/));
+
+const CANDIDATES = {
+  chromium: [process.env.CHROMIUM, 'chromium', 'chromium-browser', 'google-chrome'],
+  firefox: [process.env.FIREFOX, 'firefox-esr', 'firefox'],
+};
+
+/** As root Chromium has no sandbox; the rest keeps it from looking for servers of its own. */
+const CHROMIUM_FLAGS = [
+  '--no-sandbox',
+  '--disable-gpu',
+  '--disable-quic',
+  '--no-first-run',
+  '--disable-background-networking',
+  '--disable-component-update',
+  '--disable-sync',
+];
+
+/** The driver switches the strict policy for local files off, which no user's Firefox has. */
+const FIREFOX_PREFERENCES = { 'security.fileuri.strict_origin_policy': true };
+
+/**
+ * @param {BrowserName} name
+ * @param {{ flags?: string[], preferences?: Record<string, unknown>, viewport?: import('puppeteer-core').Viewport|null }} [options]
+ */
+export async function launch(name, { flags = [], preferences = {}, viewport = LAPTOP } = {}) {
+  return puppeteer.launch({
+    browser: name === 'chromium' ? 'chrome' : 'firefox',
+    executablePath: executable(name),
+    headless: true,
+    defaultViewport: viewport,
+    args: name === 'chromium' ? [...CHROMIUM_FLAGS, ...flags] : flags,
+    extraPrefsFirefox: name === 'firefox' ? { ...FIREFOX_PREFERENCES, ...preferences } : undefined,
+    timeout: 60_000,
+    protocolTimeout: 300_000,
+  });
+}
+
+/** @param {BrowserName} name */
+function executable(name) {
+  for (const candidate of CANDIDATES[name].filter((one) => one !== undefined)) {
+    try {
+      return execFileSync('/bin/sh', ['-c', 'command -v "$0"', candidate], { encoding: 'utf8' }).trim();
+    } catch {
+      // The next name may be there.
+    }
+  }
+  throw new Error(`There is no ${name}: run scripts/setup, or name one with ${name.toUpperCase()}=PATH.`);
+}
+
+/**
+ * Opens a file in a new tab; `complaints` collects errors and warnings of the console, and uncaught errors.
+ * @param {import('puppeteer-core').Browser} browser
+ * @param {string} [file]
+ * @returns {Promise<Tab>}
+ */
+export async function openFile(browser, file = pageFile) {
+  const tab = await newTab(browser);
+  await tab.goto(pathToFileURL(file).href, { waitUntil: 'load' });
+  return tab;
+}
+
+/** @param {import('puppeteer-core').Browser} browser @returns {Promise<Tab>} */
+export async function newTab(browser) {
+  const tab = /** @type {Tab} */ (await browser.newPage());
+  tab.complaints = [];
+  tab.on('console', (message) => {
+    if (['error', 'warn', 'assert'].includes(message.type())) tab.complaints.push(`${message.type()}: ${message.text()}`);
+  });
+  tab.on('pageerror', (error) => tab.complaints.push(`uncaught: ${error instanceof Error ? error.message : error}`));
+  return tab;
+}
+
+/**
+ * Waits until the root element says one of these states, and tells which.
+ * @param {Tab} tab
+ * @param {...string} states
+ */
+export async function waitForState(tab, ...states) {
+  try {
+    await tab.waitForFunction((wanted) => wanted.includes(document.documentElement.dataset.state ?? ''), { timeout: 30_000 }, states);
+  } catch (cause) {
+    const found = await tab.evaluate(() => `${document.documentElement.dataset.state}: ${document.body.innerText.slice(0, 400)}`);
+    throw new Error(`Waited for ${states.join(' or ')}, found ${found}\n${tab.complaints.join('\n')}`, { cause });
+  }
+  return tab.evaluate(() => document.documentElement.dataset.state ?? '');
+}
+
+/** The text that a person sees. @param {Tab} tab */
+export function shownText(tab) {
+  return tab.evaluate(() => document.body.innerText);
+}
+
+/**
+ * A picture of the window, kept where SCREENSHOTS names a directory.
+ * @param {Tab} tab
+ * @param {string} name
+ */
+export async function picture(tab, name) {
+  const directory = process.env.SCREENSHOTS;
+  if (directory) await tab.screenshot({ path: /** @type {`${string}.png`} */ (join(directory, `${name}.png`)) });
+}
+
+/**
+ * A directory that is removed after the test.
+ * @param {import('node:test').TestContext} context
+ */
+export function temporaryDirectory(context) {
+  const directory = mkdtempSync(join(tmpdir(), 'bandleaf-'));
+  context.after(() => rmSync(directory, { recursive: true, force: true }));
+  return directory;
+}
+
+/**
+ * Writes a file into a temporary directory and tells its path.
+ * @param {import('node:test').TestContext} context
+ * @param {string} name
+ * @param {string|Uint8Array} content
+ */
+export function temporaryFile(context, name, content) {
+  const path = join(temporaryDirectory(context), name);
+  writeFileSync(path, content);
+  return path;
+}
+
+/**
+ * Runs the release binary.
+ * @param {string[]} args
+ * @param {{ input?: string }} [options]
+ */
+export function command(args, { input } = {}) {
+  return execFileSync(binary, args, { encoding: 'utf8', input, maxBuffer: 1 << 28 });
+}
