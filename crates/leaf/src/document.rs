@@ -16,7 +16,7 @@ use std::fmt;
 /// The largest document that is read: about ten times a visit with 100 000 rows.
 pub const MOST_BYTES: u64 = 100_000_000;
 
-/// 2^53: up to here every whole f64 is written as a whole number.
+/// 2^53: below it every whole f64 is written as a whole number.
 const EXACT_WHOLE: f64 = 9_007_199_254_740_992.0;
 
 /// A visit as it was written.
@@ -147,9 +147,10 @@ impl<'de> Visitor<'de> for PlainVisitor {
     }
 }
 
-/// The one form of a number: whole numbers as such (so that `3` and `3.0` are one), everything else as f64.
-fn number(value: f64) -> Option<Number> {
-    if value == value.trunc() && value.abs() <= EXACT_WHOLE {
+/// The one form of a number in a document: whole numbers as such (so that `3` and `3.0` are one, and −0 is 0),
+/// everything else as f64; `None` where JSON cannot say it.
+pub fn number(value: f64) -> Option<Number> {
+    if value == value.trunc() && value.abs() < EXACT_WHOLE {
         return Some(Number::from(value as i64));
     }
     Number::from_f64(value)

@@ -21,7 +21,7 @@ mod verify;
 pub use canonical::canonical_json;
 pub use compare::{Agreement, compare};
 pub use digest::sha256;
-pub use document::{Document, MOST_BYTES};
+pub use document::{Document, MOST_BYTES, number};
 pub use open::{Opened, Outcome, open};
 pub use page::{Page, Texts};
 pub use press::press;

@@ -1,0 +1,99 @@
+//! Between the page's objects and Rust's data.
+
+use bandleaf_core::problem::Problem;
+use bandleaf_leaf::Document;
+use js_sys::{Array, Object};
+use serde::Serialize;
+use serde::de::DeserializeOwned;
+use serde_json::{Map, Value};
+use std::sync::Once;
+use wasm_bindgen::{JsCast, JsValue};
+
+/// How deep an object may be nested; the reader of JSON text stops at the same depth.
+const DEEPEST: usize = 128;
+
+/// A problem as the object that is thrown.
+pub(crate) fn thrown(problem: Problem) -> JsValue {
+    to_object(&problem).unwrap_or_else(|_| JsValue::from_str(&problem.sentence))
+}
+
+/// Plain objects and lists, `null` for what is not known.
+pub(crate) fn to_object<T: Serialize>(value: &T) -> Result<JsValue, JsValue> {
+    value.serialize(&serde_wasm_bindgen::Serializer::json_compatible()).map_err(JsValue::from)
+}
+
+/// The visit in an object.
+pub(crate) fn document(visit: &JsValue) -> Result<Document, JsValue> {
+    plain(visit, "", 0).and_then(|value| Document::from_value(value.unwrap_or_default())).map_err(thrown)
+}
+
+/// Options, a reading or the texts of a page in an object.
+pub(crate) fn from_object<T: DeserializeOwned>(object: &JsValue) -> Result<T, JsValue> {
+    let value = plain(object, "", 0).map_err(thrown)?.unwrap_or_default();
+    serde_json::from_value(value).map_err(|error| {
+        let sentence = format!("This cannot be used: {error}.");
+        thrown(Problem::error("wrong_kind", "", sentence))
+    })
+}
+
+/// The same as writing the object as JSON and reading it again: `None` for what JSON leaves out. Numbers that JSON
+/// cannot say are refused by place, where `JSON.stringify` would silently write `null`. Strings become well-formed on
+/// their way into Rust.
+fn plain(value: &JsValue, place: &str, depth: usize) -> Result<Option<Value>, Problem> {
+    if depth > DEEPEST {
+        let sentence = format!("The object at {place} is nested more than {DEEPEST} levels deep: make it flatter.");
+        return Err(Problem::error("too_deep", place, sentence));
+    }
+    if value.is_null() {
+        return Ok(Some(Value::Null));
+    }
+    if let Some(truth) = value.as_bool() {
+        return Ok(Some(Value::Bool(truth)));
+    }
+    if let Some(number) = value.as_f64() {
+        return finite(number, place).map(Some);
+    }
+    if let Some(text) = value.as_string() {
+        return Ok(Some(Value::String(text)));
+    }
+    if let Some(list) = value.dyn_ref::<Array>() {
+        let entries = list.iter().enumerate();
+        let entries =
+            entries.map(|(at, entry)| Ok(plain(&entry, &format!("{place}[{at}]"), depth + 1)?.unwrap_or_default()));
+        return entries.collect::<Result<Vec<Value>, Problem>>().map(|list| Some(Value::Array(list)));
+    }
+    if value.is_object() && !value.is_function() {
+        return fields(value.unchecked_ref(), place, depth).map(Some);
+    }
+    Ok(None)
+}
+
+fn finite(number: f64, place: &str) -> Result<Value, Problem> {
+    bandleaf_leaf::number(number).map(Value::Number).ok_or_else(|| {
+        let sentence = format!(
+            "The number at {place} is {number}, which is no number to compute with: correct it or leave it empty."
+        );
+        Problem::error("number_out_of_range", place, sentence)
+    })
+}
+
+fn fields(object: &Object, place: &str, depth: usize) -> Result<Value, Problem> {
+    let mut map = Map::new();
+    for entry in Object::entries(object).iter() {
+        let entry: Array = entry.unchecked_into();
+        let name = entry.get(0).as_string().unwrap_or_default();
+        let place = if place.is_empty() { name.clone() } else { format!("{place}.{name}") };
+        if let Some(value) = plain(&entry.get(1), &place, depth + 1)? {
+            map.insert(name, value);
+        }
+    }
+    Ok(Value::Object(map))
+}
+
+/// Has the words of a panic written to the console: what is thrown then says nothing but "unreachable".
+pub(crate) fn say_panics() {
+    static ONCE: Once = Once::new();
+    ONCE.call_once(|| {
+        std::panic::set_hook(Box::new(|panic| web_sys::console::error_1(&panic.to_string().into())));
+    });
+}
