@@ -12,14 +12,23 @@ export function About({ core, onClose }) {
   return (
     <dialog ref={dialog} class="about" aria-labelledby="about-title" onClose={onClose}>
       <h2 id="about-title">Bandleaf {core.version()}</h2>
-      <p>Calibration curves with honest uncertainty from a handful of points, in one file, without a network. Everything shown is computed on this device from the visit inside; nothing is sent anywhere.</p>
-      <p><strong>Caution.</strong> {CAUTION}</p>
+      <p>
+        Calibration curves with honest uncertainty from a handful of points, in one file, without a network. Everything shown is computed on
+        this device from the visit inside; nothing is sent anywhere.
+      </p>
+      <p>
+        <strong>Caution.</strong> {CAUTION}
+      </p>
       <p>Licence: MIT. No warranty of any kind.</p>
       <details>
         <summary>Licences of what is inside</summary>
-        <pre class="licences" tabIndex={0}>{notices}</pre>
+        <pre class="licences" tabIndex={0}>
+          {notices}
+        </pre>
       </details>
-      <button type="button" onClick={() => dialog.current?.close()}>Close</button>
+      <button type="button" onClick={() => dialog.current?.close()}>
+        Close
+      </button>
     </dialog>
   );
 }

@@ -17,10 +17,24 @@ export function AlteredView({ store, state }) {
     <main class="altered">
       <h1>{TITLES[opened.outcome] ?? 'This file is not as it was saved'}</h1>
       <p class="lead">{opened.sentence}</p>
-      {opened.changed.length > 0 && <ul>{opened.changed.map((section) => <li key={section}>Changed: {section}</li>)}</ul>}
-      {opened.field && <p>Place: <code>{opened.field}</code></p>}
+      {opened.changed.length > 0 && (
+        <ul>
+          {opened.changed.map((section) => (
+            <li key={section}>Changed: {section}</li>
+          ))}
+        </ul>
+      )}
+      {opened.field && (
+        <p>
+          Place: <code>{opened.field}</code>
+        </p>
+      )}
       <p>No value is shown, since none could be trusted. Ask for the original file, or compare the digest on the signed record.</p>
-      {count > 0 && <button type="button" class="primary" onClick={() => recover(store, opened)}>Recover the {count} points into a new sheet</button>}
+      {count > 0 && (
+        <button type="button" class="primary" onClick={() => recover(store, opened)}>
+          Recover the {count} points into a new sheet
+        </button>
+      )}
     </main>
   );
 }

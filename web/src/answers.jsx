@@ -1,9 +1,9 @@
 // The answers: a reading as a value, always in view, and the fit it comes from.
 
+import { TwoWays } from './fields.jsx';
 /** @import { Parts } from './store.js' */
 /** @import { Report } from './types.js' */
 import { influencesOf } from './visit.js';
-import { TwoWays } from './fields.jsx';
 import { CONDITIONS, coverageWords, freedomWords, noiseWords, outputUnit, valueReservations } from './words.js';
 
 /** @param {Parts} props */
@@ -12,7 +12,9 @@ export function Answers(props) {
   return (
     <section class="answers" aria-label="Answers">
       <div class="answer reading">
-        <h2><label for="reading">Reading → value</label></h2>
+        <h2>
+          <label for="reading">Reading → value</label>
+        </h2>
         <ReadingField {...props} id="reading" />
         <ReadingWords {...props} />
       </div>
@@ -29,7 +31,11 @@ export function Answers(props) {
       {report && report.checks.length > 0 && (
         <div class="answer">
           <h2>Checks</h2>
-          <ul class="plain checks">{report.checks.map((check) => <li key={check.check + check.code}>{check.sentence}</li>)}</ul>
+          <ul class="plain checks">
+            {report.checks.map((check) => (
+              <li key={check.check + check.code}>{check.sentence}</li>
+            ))}
+          </ul>
         </div>
       )}
     </section>
@@ -44,18 +50,36 @@ export function ReadingField({ state, dispatch, id }) {
   return (
     <div class="reading-row">
       <input
-        id={id} class="reading-input" inputmode="decimal" autocomplete="off" value={reading.text} placeholder="reading" aria-invalid={wrong ? 'true' : undefined} aria-describedby={`${id}-words`}
-        title="Several repeats of one reading: 812; 813" onInput={(event) => dispatch({ type: 'reading', text: event.currentTarget.value })}
+        id={id}
+        class="reading-input"
+        inputmode="decimal"
+        autocomplete="off"
+        value={reading.text}
+        placeholder="reading"
+        aria-invalid={wrong ? 'true' : undefined}
+        aria-describedby={`${id}-words`}
+        title="Several repeats of one reading: 812; 813"
+        onInput={(event) => dispatch({ type: 'reading', text: event.currentTarget.value })}
       />
       <span class="unit">{outputUnit(visit)}</span>
       {names.map((name) => (
         <label key={name} class="inline">
           {name} / {visit.instrument?.influences?.[name]?.unit ?? ''}
-          <input class="small-number" inputmode="decimal" value={reading.influences[name] ?? ''} placeholder={visit.conditions?.[name] === undefined ? '' : String(visit.conditions[name])} onInput={(event) => dispatch({ type: 'reading-influence', name, text: event.currentTarget.value })} />
+          <input
+            class="small-number"
+            inputmode="decimal"
+            value={reading.influences[name] ?? ''}
+            placeholder={visit.conditions?.[name] === undefined ? '' : String(visit.conditions[name])}
+            onInput={(event) => dispatch({ type: 'reading-influence', name, text: event.currentTarget.value })}
+          />
         </label>
       ))}
-      <span class="arrow" aria-hidden="true">→</span>
-      <output class="value" for={id}>{answer.value?.value?.display ?? '–'}</output>
+      <span class="arrow" aria-hidden="true">
+        →
+      </span>
+      <output class="value" for={id}>
+        {answer.value?.value?.display ?? '–'}
+      </output>
     </div>
   );
 }
@@ -65,17 +89,43 @@ export function ReadingWords({ core, state, dispatch }) {
   const { answer, report, reading } = state;
   if (answer.alternatives) {
     const choose = (/** @type {number[]} */ values) => dispatch({ type: 'reading', text: values.map(String).join('; ') });
-    return <p id="reading-words" class="reading-words"><TwoWays text={reading.text} alternatives={answer.alternatives} onChoose={choose} /></p>;
+    return (
+      <p id="reading-words" class="reading-words">
+        <TwoWays text={reading.text} alternatives={answer.alternatives} onChoose={choose} />
+      </p>
+    );
   }
-  if (answer.problem) return <p id="reading-words" class="reading-words trouble">{answer.problem}</p>;
-  if (!answer.value || !report) return <p id="reading-words" class="reading-words">Type what the instrument shows; repeats of one value as 812; 813.</p>;
+  if (answer.problem)
+    return (
+      <p id="reading-words" class="reading-words trouble">
+        {answer.problem}
+      </p>
+    );
+  if (!answer.value || !report)
+    return (
+      <p id="reading-words" class="reading-words">
+        Type what the instrument shows; repeats of one value as 812; 813.
+      </p>
+    );
   const reservations = valueReservations(answer.value);
   return (
     <p id="reading-words" class="reading-words">
-      {answer.value.value && <span>{coverageWords(core, report, answer.value)}. {answer.value.value.display_interval}. </span>}
-      {reservations.map((sentence) => <strong key={sentence} class="reservation">{sentence} </strong>)}
+      {answer.value.value && (
+        <span>
+          {coverageWords(core, report, answer.value)}. {answer.value.value.display_interval}.{' '}
+        </span>
+      )}
+      {reservations.map((sentence) => (
+        <strong key={sentence} class="reservation">
+          {sentence}{' '}
+        </strong>
+      ))}
       {CONDITIONS}
-      {answer.value.budget.length > 0 && <button type="button" class="change" onClick={() => dispatch({ type: 'panel', panel: { name: 'budget' } })}>budget</button>}
+      {answer.value.budget.length > 0 && (
+        <button type="button" class="change" onClick={() => dispatch({ type: 'panel', panel: { name: 'budget' } })}>
+          budget
+        </button>
+      )}
     </p>
   );
 }
@@ -89,8 +139,13 @@ function FitSummary({ core, report }) {
   return (
     <>
       <p class="big">{fit.formula}</p>
-      <p class="quiet-words">{noiseWords(core, report)}{from}</p>
-      <p class="quiet-words">{fit.points_used} {fit.points_used === 1 ? 'indication' : 'indications'}, {freedomWords(report)}</p>
+      <p class="quiet-words">
+        {noiseWords(core, report)}
+        {from}
+      </p>
+      <p class="quiet-words">
+        {fit.points_used} {fit.points_used === 1 ? 'indication' : 'indications'}, {freedomWords(report)}
+      </p>
     </>
   );
 }
@@ -104,7 +159,10 @@ function Coefficients({ core, report }) {
         <tbody>
           {terms.map((term, at) => (
             <tr key={term.term}>
-              <th scope="row">{letter(at)}<small>{term.term === '1' ? '' : `·${term.term}`}</small></th>
+              <th scope="row">
+                {letter(at)}
+                <small>{term.term === '1' ? '' : `·${term.term}`}</small>
+              </th>
               <td>{core.format_value(term.estimate, (term.interval[1] - term.interval[0]) / 2, term.unit)}</td>
             </tr>
           ))}

@@ -25,14 +25,30 @@ export class StartError extends Error {
  * @returns {Promise<Core>}
  */
 export async function startCore(texts) {
-  if (typeof WebAssembly !== 'object') throw new StartError('This browser does not run WebAssembly, which the calculation needs. Open the file in a current Chromium, Chrome, Edge or Firefox, or ask whoever looks after this computer to allow it.', false);
-  if (typeof DecompressionStream !== 'function') throw new StartError('This browser is too old to unpack the calculation. Open the file in Chromium, Chrome or Edge 109 or newer, or in Firefox 115 or newer.', false);
-  if (!sealedDigest(texts.seal)) throw new StartError('The seal of this file cannot be read: the file was changed or cut short. Ask for the original file.', true);
-  if (digestOf(texts.wasm) !== sealedDigest(texts.seal)) throw new StartError('The calculation inside this file is not the one that was sealed: the section “wasm” was changed. Ask for the original file.', true);
+  if (typeof WebAssembly !== 'object')
+    throw new StartError(
+      'This browser does not run WebAssembly, which the calculation needs. Open the file in a current Chromium, Chrome, Edge or Firefox, or ask whoever looks after this computer to allow it.',
+      false,
+    );
+  if (typeof DecompressionStream !== 'function')
+    throw new StartError(
+      'This browser is too old to unpack the calculation. Open the file in Chromium, Chrome or Edge 109 or newer, or in Firefox 115 or newer.',
+      false,
+    );
+  if (!sealedDigest(texts.seal))
+    throw new StartError('The seal of this file cannot be read: the file was changed or cut short. Ask for the original file.', true);
+  if (digestOf(texts.wasm) !== sealedDigest(texts.seal))
+    throw new StartError(
+      'The calculation inside this file is not the one that was sealed: the section “wasm” was changed. Ask for the original file.',
+      true,
+    );
   try {
     await init({ module_or_path: await inflate(decodeBase64(texts.wasm)) });
   } catch (cause) {
-    throw new StartError(`The calculation could not be started (${cause instanceof Error ? cause.message : cause}). Open the file in another browser, or ask for the original file.`, false);
+    throw new StartError(
+      `The calculation could not be started (${cause instanceof Error ? cause.message : cause}). Open the file in another browser, or ask for the original file.`,
+      false,
+    );
   }
   const { initSync: _, ...functions } = /** @type {any} */ (wasm);
   return Object.freeze({ ...functions });

@@ -14,17 +14,35 @@ export function BudgetPanel({ core, state, onClose }) {
       {value?.value && (
         <>
           <p class="lead">{value.value.display}</p>
-          {value.linearised && <p>By the law of propagation: {core.format_value(value.linearised.estimate, value.linearised.scale, unit)} with the standard uncertainty u.</p>}
+          {value.linearised && (
+            <p>
+              By the law of propagation: {core.format_value(value.linearised.estimate, value.linearised.scale, unit)} with the standard
+              uncertainty u.
+            </p>
+          )}
           <div class="scroll" tabIndex={0} role="region" aria-label="Budget">
             <table class="figures">
-              <thead><tr><th scope="col">source</th><th scope="col">type</th><th scope="col">distribution</th><th scope="col">u</th><th scope="col">ν</th><th scope="col">sensitivity</th><th scope="col">part of u{unit && ` / ${unit}`}</th><th scope="col">share</th></tr></thead>
+              <thead>
+                <tr>
+                  <th scope="col">source</th>
+                  <th scope="col">type</th>
+                  <th scope="col">distribution</th>
+                  <th scope="col">u</th>
+                  <th scope="col">ν</th>
+                  <th scope="col">sensitivity</th>
+                  <th scope="col">part of u{unit && ` / ${unit}`}</th>
+                  <th scope="col">share</th>
+                </tr>
+              </thead>
               <tbody>
                 {value.budget.map((line) => (
                   <tr key={line.source}>
                     <th scope="row">{line.source}</th>
                     <td>{line.type}</td>
                     <td>{line.distribution}</td>
-                    <td>{figure(line.standard_uncertainty)} {line.unit}</td>
+                    <td>
+                      {figure(line.standard_uncertainty)} {line.unit}
+                    </td>
                     <td>{line.degrees_of_freedom === null ? '∞' : core.format_number(line.degrees_of_freedom, 3)}</td>
                     <td>{figure(line.sensitivity)}</td>
                     <td>{figure(line.contribution)}</td>

@@ -14,12 +14,16 @@ import { cellValue, columnsOf, pointsOf, typedText, valueText } from './visit.js
  * @returns {Pieces}
  */
 export function readPieces(core, text) {
-  const pieces = text.split(/[;\n\t]/).map((piece) => piece.trim()).filter((piece) => piece !== '');
+  const pieces = text
+    .split(/[;\n\t]/)
+    .map((piece) => piece.trim())
+    .filter((piece) => piece !== '');
   if (pieces.length === 0) return { values: null, alternatives: null, sentence: null };
   const cells = pieces.map((piece) => core.parse_cell(piece));
   const bad = cells.find((cell) => cell.value === null && cell.alternatives.length < 2);
   if (bad) return { values: null, alternatives: null, sentence: bad.problem?.sentence ?? 'This is not a number.' };
-  if (cells.some((cell) => cell.alternatives.length === 2)) return { values: null, alternatives: [readings(cells, 0), readings(cells, 1)], sentence: null };
+  if (cells.some((cell) => cell.alternatives.length === 2))
+    return { values: null, alternatives: [readings(cells, 0), readings(cells, 1)], sentence: null };
   return { values: readings(cells, 0), alternatives: null, sentence: null };
 }
 
@@ -82,7 +86,9 @@ export function firstUnread(core, visit) {
   for (let index = 0; index < points.length; index += 1) {
     const trouble = rowTrouble(core, columns, points[index]);
     if (!trouble) continue;
-    const sentence = trouble.alternatives ? `“${trouble.text}” can be read in two ways: choose one in the row.` : `“${trouble.text}” in ${trouble.label}: ${trouble.sentence}`;
+    const sentence = trouble.alternatives
+      ? `“${trouble.text}” can be read in two ways: choose one in the row.`
+      : `“${trouble.text}” in ${trouble.label}: ${trouble.sentence}`;
     return { row: index + 1, sentence };
   }
   return null;

@@ -12,8 +12,16 @@ import { blankVisit, cellChange, influencesOf, pointsOf, withIntake, withPoint }
 import { isSound, outcomeWords, titleOf } from './words.js';
 
 export const DEMOS = [
-  { name: 'Header tank', hint: 'level gauge, slightly curved, one point that disagrees', visit: /** @type {Visit} */ (/** @type {unknown} */ (headerTank)) },
-  { name: 'Pressure transmitter', hint: '0 to 10 bar, 4 to 20 mA, up and down', visit: /** @type {Visit} */ (/** @type {unknown} */ (transmitter)) },
+  {
+    name: 'Header tank',
+    hint: 'level gauge, slightly curved, one point that disagrees',
+    visit: /** @type {Visit} */ (/** @type {unknown} */ (headerTank)),
+  },
+  {
+    name: 'Pressure transmitter',
+    hint: '0 to 10 bar, 4 to 20 mA, up and down',
+    visit: /** @type {Visit} */ (/** @type {unknown} */ (transmitter)),
+  },
 ];
 
 const ACCEPTED = '.html,.htm,.json,.csv,.tsv,.txt,.dat';
@@ -36,7 +44,13 @@ export async function saveLeaf(core, store) {
     const name = nameFor(visit, '.html');
     const done = await saveFile(bytes, name, 'text/html');
     if (done === 'cancelled') return;
-    store.dispatch({ type: 'pressed', notice: { level: 'note', sentence: `Leaf ${done === 'saved' ? 'saved' : `“${name}” handed to the browser's downloads`}. Digest of the visit, for the signed record: ${core.digest(visit)}` } });
+    store.dispatch({
+      type: 'pressed',
+      notice: {
+        level: 'note',
+        sentence: `Leaf ${done === 'saved' ? 'saved' : `“${name}” handed to the browser's downloads`}. Digest of the visit, for the signed record: ${core.digest(visit)}`,
+      },
+    });
   } catch (problem) {
     say(store, refusal(problem));
   }
@@ -68,10 +82,19 @@ export async function saveCurve(store) {
   const { visit, drawn, report } = store.state();
   if (!drawn || !report) return;
   const { argument, response } = report.units;
-  const names = ['curve', 'standard uncertainty of the curve', 'curve from', 'curve to', 'new indication from', 'new indication to', 'nominal'];
+  const names = [
+    'curve',
+    'standard uncertainty of the curve',
+    'curve from',
+    'curve to',
+    'new indication from',
+    'new indication to',
+    'nominal',
+  ];
   const header = [`${report.units.variable} / ${argument}`, ...names.map((name) => `${name} / ${response}`)].map(quoted).join(',');
   const lines = [];
-  for (let at = 0; at < drawn.rows.length; at += 8) lines.push(Array.from(drawn.rows.subarray(at, at + 8), (value) => (Number.isNaN(value) ? '' : String(value))).join(','));
+  for (let at = 0; at < drawn.rows.length; at += 8)
+    lines.push(Array.from(drawn.rows.subarray(at, at + 8), (value) => (Number.isNaN(value) ? '' : String(value))).join(','));
   await saveFile(`${[header, ...lines].join('\r\n')}\r\n`, nameFor(visit, '.curve.csv'), 'text/csv');
 }
 
@@ -139,13 +162,22 @@ export function readIntake(core, { text, bytes }, options) {
 export function addIntake(store, intake, replace, source) {
   const more = intake.problems.map((problem) => problem.sentence);
   const count = intake.points.length;
-  if (count === 0) return say(store, { level: 'error', sentence: `Nothing in ${source} could be read as a pair of reference value and indication; the sheet stays as it was.`, more });
+  if (count === 0)
+    return say(store, {
+      level: 'error',
+      sentence: `Nothing in ${source} could be read as a pair of reference value and indication; the sheet stays as it was.`,
+      more,
+    });
   const { visit, entering } = store.state();
   const what = `${count} ${count === 1 ? 'row' : 'rows'} from ${source}`;
   store.dispatch({ type: 'edit', visit: withIntake(visit, intake, replace, entering), what });
   const unread = intake.problems.filter((problem) => problem.level !== 'note').length;
   const left = unread > 0 ? ` ${unread === 1 ? 'One thing' : `${unread} things`} could not be read.` : '';
-  say(store, { level: unread > 0 ? 'warning' : 'note', sentence: `${replace ? 'The sheet now holds' : 'Added'} ${what}.${left}${unitWords(visit, intake)}`, more });
+  say(store, {
+    level: unread > 0 ? 'warning' : 'note',
+    sentence: `${replace ? 'The sheet now holds' : 'Added'} ${what}.${left}${unitWords(visit, intake)}`,
+    more,
+  });
 }
 
 /**
@@ -199,14 +231,23 @@ export function pasted(event, core, store) {
  * @param {Visit} visit
  */
 export function loadDemo(core, store, visit) {
-  replaceBy(core, store, visit, `demo “${titleOf(visit)}” opened`, { level: 'note', sentence: 'A demo: all names and numbers in it are invented. Undo brings the sheet back that was here.' });
+  replaceBy(core, store, visit, `demo “${titleOf(visit)}” opened`, {
+    level: 'note',
+    sentence: 'A demo: all names and numbers in it are invented. Undo brings the sheet back that was here.',
+  });
 }
 
 /**
  * @param {Store} store
  */
 export function newSheet(store) {
-  store.dispatch({ type: 'replace', visit: blankVisit(today()), origin: 'blank', what: 'new sheet', notice: { level: 'note', sentence: 'A new sheet. Undo brings the one back that was here.' } });
+  store.dispatch({
+    type: 'replace',
+    visit: blankVisit(today()),
+    origin: 'blank',
+    what: 'new sheet',
+    notice: { level: 'note', sentence: 'A new sheet. Undo brings the one back that was here.' },
+  });
 }
 
 /**
@@ -244,9 +285,14 @@ export function replaceBy(core, store, visit, what, notice) {
  */
 function openLeaf(core, store, bytes, name) {
   const opened = core.open_bytes(bytes);
-  if (!isSound(opened)) return say(store, { level: 'error', sentence: `“${name}” was not opened. ${opened.sentence}`, more: opened.changed, recover: opened });
-  if (!opened.visit) return say(store, { level: 'error', sentence: `“${name}” is a page without a visit: there is nothing in it to open.` });
-  replaceBy(core, store, opened.visit, `leaf “${name}” opened`, { level: 'note', sentence: `“${name}” opened; ${outcomeWords(opened.outcome)}.` });
+  if (!isSound(opened))
+    return say(store, { level: 'error', sentence: `“${name}” was not opened. ${opened.sentence}`, more: opened.changed, recover: opened });
+  if (!opened.visit)
+    return say(store, { level: 'error', sentence: `“${name}” is a page without a visit: there is nothing in it to open.` });
+  replaceBy(core, store, opened.visit, `leaf “${name}” opened`, {
+    level: 'note',
+    sentence: `“${name}” opened; ${outcomeWords(opened.outcome)}.`,
+  });
 }
 
 /**
@@ -260,12 +306,21 @@ function openVisit(core, store, text, name) {
   try {
     visit = JSON.parse(text);
   } catch (cause) {
-    return say(store, { level: 'error', sentence: `“${name}” is not whole: it cannot be read as JSON (${cause instanceof Error ? cause.message : cause}). Save it again where it came from.` });
+    return say(store, {
+      level: 'error',
+      sentence: `“${name}” is not whole: it cannot be read as JSON (${cause instanceof Error ? cause.message : cause}). Save it again where it came from.`,
+    });
   }
   if (!Array.isArray(visit.points) || String(visit.schema ?? 'bandleaf.visit.').startsWith('bandleaf.visit.') === false) {
-    return say(store, { level: 'error', sentence: `“${name}” is no visit: it has no list of points. Open a leaf, a visit, or a table of points.` });
+    return say(store, {
+      level: 'error',
+      sentence: `“${name}” is no visit: it has no list of points. Open a leaf, a visit, or a table of points.`,
+    });
   }
-  replaceBy(core, store, JSON.parse(core.canonical(visit)), `visit “${name}” opened`, { level: 'note', sentence: `Visit “${name}” opened.` });
+  replaceBy(core, store, JSON.parse(core.canonical(visit)), `visit “${name}” opened`, {
+    level: 'note',
+    sentence: `Visit “${name}” opened.`,
+  });
 }
 
 /**

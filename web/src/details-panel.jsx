@@ -6,7 +6,17 @@ import { useState } from 'preact/hooks';
 import { Choice, NumberField, TextField } from './fields.jsx';
 import { PanelFrame } from './panel.jsx';
 import { notNegative } from './point-panel.jsx';
-import { influencesOf, pointsOf, withEveryPoint, withInfluence, withInstrument, withOccasion, withOutput, withStandard, withoutInfluence } from './visit.js';
+import {
+  influencesOf,
+  pointsOf,
+  withEveryPoint,
+  withInfluence,
+  withInstrument,
+  withOccasion,
+  withOutput,
+  withoutInfluence,
+  withStandard,
+} from './visit.js';
 
 /** @param {Parts & { onClose: () => void }} props */
 export function DetailsPanel({ core, store, state, dispatch, onClose }) {
@@ -14,32 +24,80 @@ export function DetailsPanel({ core, store, state, dispatch, onClose }) {
   const instrument = visit.instrument ?? {};
   const output = instrument.output ?? {};
   const range = instrument.range ?? null;
-  const edit = (/** @type {string} */ what) => (/** @type {(visit: Visit) => Visit} */ change) => dispatch({ type: 'edit', visit: change(store.state().visit), what });
+  const edit = (/** @type {string} */ what) => (/** @type {(visit: Visit) => Visit} */ change) =>
+    dispatch({ type: 'edit', visit: change(store.state().visit), what });
   const text = (/** @type {'name'|'serial'|'place'|'quantity'|'unit'} */ field, /** @type {string} */ label, hint = '') => (
-    <TextField label={label} hint={hint} value={instrument[field] ?? ''} onCommit={(value) => edit(label.toLowerCase())((now) => withInstrument(now, { [field]: value.trim() }))} />
+    <TextField
+      label={label}
+      hint={hint}
+      value={instrument[field] ?? ''}
+      onCommit={(value) => edit(label.toLowerCase())((now) => withInstrument(now, { [field]: value.trim() }))}
+    />
   );
   return (
     <PanelFrame title="Instrument and occasion" onClose={onClose}>
       {text('name', 'Instrument')}
-      <div class="pair">{text('place', 'Place')}{text('serial', 'Serial number')}</div>
-      <div class="pair">{text('quantity', 'Quantity', 'for instance level')}{text('unit', 'Unit', 'of value and reference')}</div>
-      <Range core={core} range={range} unit={instrument.unit ?? ''} onChange={(next) => edit('range')((now) => withInstrument(now, { range: next }))} />
       <div class="pair">
-        <TextField label="Unit shown, if another" value={output.unit ?? ''} hint="for instance mA" onCommit={(value) => edit('unit shown')((now) => withOutput(now, { unit: value.trim() || null }))} />
-        <NumberField core={core} label="Least digit shown" unit={output.unit || instrument.unit} value={output.resolution} onCommit={(value) => edit('least digit')((now) => withOutput(now, { resolution: value }))} refuse={notNegative} />
+        {text('place', 'Place')}
+        {text('serial', 'Serial number')}
+      </div>
+      <div class="pair">
+        {text('quantity', 'Quantity', 'for instance level')}
+        {text('unit', 'Unit', 'of value and reference')}
+      </div>
+      <Range
+        core={core}
+        range={range}
+        unit={instrument.unit ?? ''}
+        onChange={(next) => edit('range')((now) => withInstrument(now, { range: next }))}
+      />
+      <div class="pair">
+        <TextField
+          label="Unit shown, if another"
+          value={output.unit ?? ''}
+          hint="for instance mA"
+          onCommit={(value) => edit('unit shown')((now) => withOutput(now, { unit: value.trim() || null }))}
+        />
+        <NumberField
+          core={core}
+          label="Least digit shown"
+          unit={output.unit || instrument.unit}
+          value={output.resolution}
+          onCommit={(value) => edit('least digit')((now) => withOutput(now, { resolution: value }))}
+          refuse={notNegative}
+        />
       </div>
       <h3>Occasion</h3>
       <div class="pair">
-        <TextField label="Date" type="date" value={visit.occasion?.date ?? ''} onCommit={(value) => edit('date')((now) => withOccasion(now, { date: value || null }))} />
-        <TextField label="By" value={visit.occasion?.by ?? ''} onCommit={(value) => edit('who')((now) => withOccasion(now, { by: value.trim() }))} />
+        <TextField
+          label="Date"
+          type="date"
+          value={visit.occasion?.date ?? ''}
+          onCommit={(value) => edit('date')((now) => withOccasion(now, { date: value || null }))}
+        />
+        <TextField
+          label="By"
+          value={visit.occasion?.by ?? ''}
+          onCommit={(value) => edit('who')((now) => withOccasion(now, { by: value.trim() }))}
+        />
       </div>
       {pointsOf(visit).length > 0 && (
         <Choice
-          label="Every row is" value={commonState(visit)} onChoose={(value) => edit('state of every row')((now) => withEveryPoint(now, { state: /** @type {PointState} */ (value) }))}
-          options={[{ value: 'as_found', label: 'as found' }, { value: 'as_left', label: 'as left' }]}
+          label="Every row is"
+          value={commonState(visit)}
+          onChoose={(value) => edit('state of every row')((now) => withEveryPoint(now, { state: /** @type {PointState} */ (value) }))}
+          options={[
+            { value: 'as_found', label: 'as found' },
+            { value: 'as_left', label: 'as left' },
+          ]}
         />
       )}
-      <TextField label="Notes" rows={3} value={visit.occasion?.notes ?? ''} onCommit={(value) => edit('notes')((now) => withOccasion(now, { notes: value }))} />
+      <TextField
+        label="Notes"
+        rows={3}
+        value={visit.occasion?.notes ?? ''}
+        onCommit={(value) => edit('notes')((now) => withOccasion(now, { notes: value }))}
+      />
       <StandardFields {...{ core, store, state, dispatch }} />
       <Influences {...{ core, store, state, dispatch }} />
     </PanelFrame>
@@ -57,7 +115,8 @@ function Range({ core, range, unit, onChange }) {
     else if (range) onChange(null);
   };
   const ends = range ?? half;
-  const order = (/** @type {number|null} */ low, /** @type {number|null} */ high) => (low !== null && high !== null && low >= high ? 'The range starts below its end.' : null);
+  const order = (/** @type {number|null} */ low, /** @type {number|null} */ high) =>
+    low !== null && high !== null && low >= high ? 'The range starts below its end.' : null;
   return (
     <div class="pair">
       <NumberField core={core} label="Range from" unit={unit} value={ends[0]} onCommit={put(0)} refuse={(value) => order(value, ends[1])} />
@@ -71,7 +130,8 @@ function StandardFields({ core, store, state, dispatch }) {
   const { visit } = state;
   const [standard, ...others] = visit.standards ?? [];
   const unit = visit.instrument?.unit ?? '';
-  const edit = (/** @type {string} */ what) => (/** @type {(visit: Visit) => Visit} */ change) => dispatch({ type: 'edit', visit: change(store.state().visit), what });
+  const edit = (/** @type {string} */ what) => (/** @type {(visit: Visit) => Visit} */ change) =>
+    dispatch({ type: 'edit', visit: change(store.state().visit), what });
   const errorOf = (/** @type {string} */ kind) => standard?.errors?.find((error) => error.kind === kind)?.standard_uncertainty ?? null;
   const setError = (/** @type {string} */ kind) => (/** @type {number|null} */ value) =>
     edit('uncertainty of the standard')((now) => {
@@ -83,17 +143,63 @@ function StandardFields({ core, store, state, dispatch }) {
   return (
     <>
       <h3>Measurement standard</h3>
-      <TextField label="Name" value={standard?.name ?? ''} onCommit={(value) => edit('standard')((now) => withStandard(now, { name: value.trim() }))} />
+      <TextField
+        label="Name"
+        value={standard?.name ?? ''}
+        onCommit={(value) => edit('standard')((now) => withStandard(now, { name: value.trim() }))}
+      />
       <div class="pair">
-        <TextField label="Certificate" value={standard?.certificate ?? ''} onCommit={(value) => edit('certificate')((now) => withStandard(now, { certificate: value.trim() }))} />
-        <TextField label="Due" type="date" value={standard?.due ?? ''} onCommit={(value) => edit('due date of the standard')((now) => withStandard(now, { due: value || null }))} />
+        <TextField
+          label="Certificate"
+          value={standard?.certificate ?? ''}
+          onCommit={(value) => edit('certificate')((now) => withStandard(now, { certificate: value.trim() }))}
+        />
+        <TextField
+          label="Due"
+          type="date"
+          value={standard?.due ?? ''}
+          onCommit={(value) => edit('due date of the standard')((now) => withStandard(now, { due: value || null }))}
+        />
       </div>
       <div class="pair">
-        <NumberField core={core} label="Common offset, standard uncertainty" unit={unit} value={errorOf('offset')} onCommit={setError('offset')} refuse={notNegative} />
-        <NumberField core={core} label="Common gain, standard uncertainty" value={errorOf('gain')} onCommit={setError('gain')} hint="a share: 1e-5" refuse={notNegative} />
+        <NumberField
+          core={core}
+          label="Common offset, standard uncertainty"
+          unit={unit}
+          value={errorOf('offset')}
+          onCommit={setError('offset')}
+          refuse={notNegative}
+        />
+        <NumberField
+          core={core}
+          label="Common gain, standard uncertainty"
+          value={errorOf('gain')}
+          onCommit={setError('gain')}
+          hint="a share: 1e-5"
+          refuse={notNegative}
+        />
       </div>
-      {settings.length > 0 && <NumberField core={core} label="Each setting, standard uncertainty, for every row" unit={unit} value={common} onCommit={(value) => edit('uncertainty of the settings')((now) => withEveryPoint(now, { setting_uncertainty: value }))} refuse={notNegative} hint={common === null && settings.some((value) => value !== null) ? 'The rows have different ones; a number here replaces them.' : undefined} />}
-      {others.length > 0 && <p class="hint">The visit has {others.length} more {others.length === 1 ? 'standard' : 'standards'}: {others.map((other) => other.name || other.id).join(', ')}.</p>}
+      {settings.length > 0 && (
+        <NumberField
+          core={core}
+          label="Each setting, standard uncertainty, for every row"
+          unit={unit}
+          value={common}
+          onCommit={(value) => edit('uncertainty of the settings')((now) => withEveryPoint(now, { setting_uncertainty: value }))}
+          refuse={notNegative}
+          hint={
+            common === null && settings.some((value) => value !== null)
+              ? 'The rows have different ones; a number here replaces them.'
+              : undefined
+          }
+        />
+      )}
+      {others.length > 0 && (
+        <p class="hint">
+          The visit has {others.length} more {others.length === 1 ? 'standard' : 'standards'}:{' '}
+          {others.map((other) => other.name || other.id).join(', ')}.
+        </p>
+      )}
     </>
   );
 }
@@ -115,8 +221,26 @@ function Influences({ core, store, state, dispatch }) {
       <h3>Influence quantities</h3>
       {influencesOf(visit).map((influence) => (
         <div key={influence} class="pair">
-          <NumberField core={core} label={`${influence}, reference condition`} unit={visit.instrument?.influences?.[influence]?.unit} value={visit.conditions?.[influence]} onCommit={(value) => dispatch({ type: 'edit', visit: { ...visit, conditions: conditionsWith(visit, influence, value) }, what: `condition of ${influence}` })} />
-          <button type="button" class="small" onClick={() => dispatch({ type: 'edit', visit: withoutInfluence(visit, influence), what: `influence ${influence} removed` })}>Remove {influence}</button>
+          <NumberField
+            core={core}
+            label={`${influence}, reference condition`}
+            unit={visit.instrument?.influences?.[influence]?.unit}
+            value={visit.conditions?.[influence]}
+            onCommit={(value) =>
+              dispatch({
+                type: 'edit',
+                visit: { ...visit, conditions: conditionsWith(visit, influence, value) },
+                what: `condition of ${influence}`,
+              })
+            }
+          />
+          <button
+            type="button"
+            class="small"
+            onClick={() => dispatch({ type: 'edit', visit: withoutInfluence(visit, influence), what: `influence ${influence} removed` })}
+          >
+            Remove {influence}
+          </button>
         </div>
       ))}
       <form
@@ -126,11 +250,21 @@ function Influences({ core, store, state, dispatch }) {
           if (usable) add();
         }}
       >
-        <div class="field"><label for="new-influence">New one, for instance temperature</label><input id="new-influence" value={name} autocomplete="off" onInput={(event) => setName(event.currentTarget.value)} /></div>
-        <div class="field"><label for="new-influence-unit">Its unit</label><input id="new-influence-unit" value={unit} autocomplete="off" onInput={(event) => setUnit(event.currentTarget.value)} /></div>
-        <button type="submit" class="small" disabled={!usable}>Add a column</button>
+        <div class="field">
+          <label for="new-influence">New one, for instance temperature</label>
+          <input id="new-influence" value={name} autocomplete="off" onInput={(event) => setName(event.currentTarget.value)} />
+        </div>
+        <div class="field">
+          <label for="new-influence-unit">Its unit</label>
+          <input id="new-influence-unit" value={unit} autocomplete="off" onInput={(event) => setUnit(event.currentTarget.value)} />
+        </div>
+        <button type="submit" class="small" disabled={!usable}>
+          Add a column
+        </button>
       </form>
-      {plain !== '' && !usable && <p class="trouble">A name is one word of letters, digits and underscores, not x or y, and not one that is there.</p>}
+      {plain !== '' && !usable && (
+        <p class="trouble">A name is one word of letters, digits and underscores, not x or y, and not one that is there.</p>
+      )}
     </>
   );
 }

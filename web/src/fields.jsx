@@ -16,15 +16,38 @@ export function TextField({ label, value, onCommit, hint, type = 'text', rows, l
     setDraft(null);
   };
   const shared = {
-    id, value: draft ?? value, 'aria-describedby': hint ? `${id}-hint` : undefined, onBlur: commit,
+    id,
+    value: draft ?? value,
+    'aria-describedby': hint ? `${id}-hint` : undefined,
+    onBlur: commit,
     onInput: (/** @type {any} */ event) => setDraft(event.currentTarget.value),
   };
   return (
     <div class="field">
       <label for={id}>{label}</label>
-      {rows ? <textarea rows={rows} spellcheck={false} {...shared} /> : <input type={type} list={list && `${id}-list`} autocomplete="off" onKeyDown={(event) => event.key === 'Enter' && commit()} {...shared} />}
-      {list && <datalist id={`${id}-list`}>{list.map((entry) => <option key={entry} value={entry} />)}</datalist>}
-      {hint && <p class="hint" id={`${id}-hint`}>{hint}</p>}
+      {rows ? (
+        <textarea rows={rows} spellcheck={false} {...shared} />
+      ) : (
+        <input
+          type={type}
+          list={list && `${id}-list`}
+          autocomplete="off"
+          onKeyDown={(event) => event.key === 'Enter' && commit()}
+          {...shared}
+        />
+      )}
+      {list && (
+        <datalist id={`${id}-list`}>
+          {list.map((entry) => (
+            <option key={entry} value={entry} />
+          ))}
+        </datalist>
+      )}
+      {hint && (
+        <p class="hint" id={`${id}-hint`}>
+          {hint}
+        </p>
+      )}
     </div>
   );
 }
@@ -54,12 +77,22 @@ export function NumberField({ core, label, value, onCommit, unit, hint, refuse }
     <div class="field">
       <label for={id}>{unit ? `${label} / ${unit}` : label}</label>
       <input
-        id={id} class="number" inputmode="decimal" autocomplete="off" value={shown} aria-invalid={sentence ? 'true' : undefined} aria-describedby={`${id}-hint`}
-        onInput={(event) => setDraft(event.currentTarget.value)} onBlur={commit} onKeyDown={(event) => event.key === 'Enter' && commit()}
+        id={id}
+        class="number"
+        inputmode="decimal"
+        autocomplete="off"
+        value={shown}
+        aria-invalid={sentence ? 'true' : undefined}
+        aria-describedby={`${id}-hint`}
+        onInput={(event) => setDraft(event.currentTarget.value)}
+        onBlur={commit}
+        onKeyDown={(event) => event.key === 'Enter' && commit()}
       />
       <div id={`${id}-hint`}>
         {sentence && <p class="trouble">{sentence}</p>}
-        {draft !== null && pieces.alternatives && <TwoWays text={shown} alternatives={pieces.alternatives} onChoose={(choice) => choose(choice[0])} />}
+        {draft !== null && pieces.alternatives && (
+          <TwoWays text={shown} alternatives={pieces.alternatives} onChoose={(choice) => choose(choice[0])} />
+        )}
         {hint && !sentence && <p class="hint">{hint}</p>}
       </div>
     </div>
@@ -75,7 +108,15 @@ export function TwoWays({ text, alternatives, onChoose }) {
     <span class="two-ways">
       “{text}” can be read as
       {alternatives.map((values) => (
-        <button key={values.join()} type="button" class="small" onMouseDown={(event) => event.preventDefault()} onClick={() => onChoose(values)}>{values.map(String).join('; ')}</button>
+        <button
+          key={values.join()}
+          type="button"
+          class="small"
+          onMouseDown={(event) => event.preventDefault()}
+          onClick={() => onChoose(values)}
+        >
+          {values.map(String).join('; ')}
+        </button>
       ))}
     </span>
   );
@@ -93,7 +134,10 @@ export function Choice({ label, value, options, onChoose, hideLabel }) {
       {options.map((option) => (
         <label key={option.value} class="option">
           <input type="radio" name={name} checked={option.value === value} onChange={() => onChoose(option.value)} />
-          <span>{option.label}{option.hint && <small>{option.hint}</small>}</span>
+          <span>
+            {option.label}
+            {option.hint && <small>{option.hint}</small>}
+          </span>
         </label>
       ))}
     </fieldset>

@@ -8,7 +8,11 @@ const LARGEST = 32 * 1024 * 1024;
  * @returns {Promise<{ bytes: Uint8Array, sentence: null } | { bytes: null, sentence: string }>}
  */
 export async function readFile(file) {
-  if (file.size > LARGEST) return { bytes: null, sentence: `“${file.name}” has ${Math.round(file.size / 1048576)} MB and was not read: files up to ${LARGEST / 1048576} MB are. Cut the data down to the calibration points.` };
+  if (file.size > LARGEST)
+    return {
+      bytes: null,
+      sentence: `“${file.name}” has ${Math.round(file.size / 1048576)} MB and was not read: files up to ${LARGEST / 1048576} MB are. Cut the data down to the calibration points.`,
+    };
   try {
     return { bytes: new Uint8Array(await file.arrayBuffer()), sentence: null };
   } catch {
@@ -62,7 +66,12 @@ export async function saveFile(content, name, type) {
  * @param {string} ending
  */
 export function fileName(title, date, ending) {
-  const plain = title.normalize('NFKD').replace(/[^\p{L}\p{N}]+/gu, '-').replace(/^-+|-+$/g, '').slice(0, 60).toLowerCase();
+  const plain = title
+    .normalize('NFKD')
+    .replace(/[^\p{L}\p{N}]+/gu, '-')
+    .replace(/^-+|-+$/g, '')
+    .slice(0, 60)
+    .toLowerCase();
   return [plain || 'sheet', date].filter((part) => part !== '').join('-') + ending;
 }
 

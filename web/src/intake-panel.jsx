@@ -3,11 +3,11 @@
 /** @import { Parts } from './store.js' */
 /** @import { Column, Intake, Panel } from './types.js' */
 import { useMemo, useState } from 'preact/hooks';
+import { addIntake, readIntake } from './commands.js';
 import { Choice } from './fields.jsx';
 import { PanelFrame } from './panel.jsx';
-import { influencesOf, pointsOf } from './visit.js';
-import { addIntake, readIntake } from './commands.js';
 import { refusal } from './store.js';
+import { influencesOf, pointsOf } from './visit.js';
 
 const PREVIEW = 8;
 
@@ -17,7 +17,12 @@ export function IntakePanel({ core, store, state, intake, onClose }) {
   const [options, setOptions] = useState(/** @type {Record<string, any>} */ (known));
   const { read, sentence } = useMemo(() => attempt(() => readIntake(core, intake, options)), [intake, options]);
   const held = pointsOf(state.visit).length;
-  if (!read) return <PanelFrame title="Points from outside" onClose={onClose}><p class="trouble">{sentence}</p></PanelFrame>;
+  if (!read)
+    return (
+      <PanelFrame title="Points from outside" onClose={onClose}>
+        <p class="trouble">{sentence}</p>
+      </PanelFrame>
+    );
   const count = read.points.length;
   const add = (/** @type {boolean} */ replace) => {
     onClose();
@@ -29,7 +34,9 @@ export function IntakePanel({ core, store, state, intake, onClose }) {
       <Columns intake={read} onChange={(columns) => setOptions({ ...options, columns: { ...options.columns, ...columns } })} />
       {read.questions.map((question) => (
         <Choice
-          key={question.code + question.column} label={question.sentence} value=""
+          key={question.code + question.column}
+          label={question.sentence}
+          value=""
           options={question.choices.map((choice, at) => ({ value: String(at), label: choice.label }))}
           onChoose={(at) => setOptions(question.choices[Number(at)].option)}
         />
@@ -37,14 +44,28 @@ export function IntakePanel({ core, store, state, intake, onClose }) {
       {read.problems.length > 0 && (
         <section aria-label="Not read">
           <h3>Not read</h3>
-          <ul class="plain">{read.problems.slice(0, 200).map((problem) => <li key={problem.place + problem.sentence}>{problem.sentence}</li>)}</ul>
+          <ul class="plain">
+            {read.problems.slice(0, 200).map((problem) => (
+              <li key={problem.place + problem.sentence}>{problem.sentence}</li>
+            ))}
+          </ul>
           {read.problems.length > 200 && <p class="hint">and {read.problems.length - 200} more.</p>}
         </section>
       )}
       <div class="buttons">
-        <button type="button" class="primary" disabled={count === 0} onClick={() => add(false)}>{held > 0 ? `Add ${count} behind the ${held} rows` : `Add ${count} ${count === 1 ? 'row' : 'rows'}`}</button>
-        {held > 0 && <button type="button" disabled={count === 0} onClick={() => add(true)}>Put {count} in their place</button>}
-        {Object.keys(options).length > 1 && <button type="button" onClick={() => setOptions(known)}>Ask again</button>}
+        <button type="button" class="primary" disabled={count === 0} onClick={() => add(false)}>
+          {held > 0 ? `Add ${count} behind the ${held} rows` : `Add ${count} ${count === 1 ? 'row' : 'rows'}`}
+        </button>
+        {held > 0 && (
+          <button type="button" disabled={count === 0} onClick={() => add(true)}>
+            Put {count} in their place
+          </button>
+        )}
+        {Object.keys(options).length > 1 && (
+          <button type="button" onClick={() => setOptions(known)}>
+            Ask again
+          </button>
+        )}
       </div>
     </PanelFrame>
   );
@@ -55,8 +76,24 @@ function Preview({ intake }) {
   return (
     <div class="scroll" tabIndex={0} role="region" aria-label="First rows as they were read">
       <table class="figures">
-        <thead><tr>{intake.columns.map((column) => <th key={column.index} scope="col">{columnName(column)}</th>)}</tr></thead>
-        <tbody>{intake.rows.slice(0, PREVIEW).map((row, at) => <tr key={at}>{row.map((cell, index) => <td key={index}>{cell}</td>)}</tr>)}</tbody>
+        <thead>
+          <tr>
+            {intake.columns.map((column) => (
+              <th key={column.index} scope="col">
+                {columnName(column)}
+              </th>
+            ))}
+          </tr>
+        </thead>
+        <tbody>
+          {intake.rows.slice(0, PREVIEW).map((row, at) => (
+            <tr key={at}>
+              {row.map((cell, index) => (
+                <td key={index}>{cell}</td>
+              ))}
+            </tr>
+          ))}
+        </tbody>
       </table>
     </div>
   );
@@ -70,15 +107,23 @@ function Columns({ intake, onChange }) {
   };
   return (
     <div class="pair">
-      {/** @type {const} */ (['reference', 'indication']).map((role) => (
-        <label key={role}>
-          {role === 'reference' ? 'Reference value is in' : 'Indication is in'}
-          <select value={at(role) ?? ''} onChange={choose(role)}>
-            <option value="" disabled>choose a column</option>
-            {intake.columns.map((column) => <option key={column.index} value={column.index}>{columnName(column)}</option>)}
-          </select>
-        </label>
-      ))}
+      {
+        /** @type {const} */ (['reference', 'indication']).map((role) => (
+          <label key={role}>
+            {role === 'reference' ? 'Reference value is in' : 'Indication is in'}
+            <select value={at(role) ?? ''} onChange={choose(role)}>
+              <option value="" disabled>
+                choose a column
+              </option>
+              {intake.columns.map((column) => (
+                <option key={column.index} value={column.index}>
+                  {columnName(column)}
+                </option>
+              ))}
+            </select>
+          </label>
+        ))
+      }
     </div>
   );
 }

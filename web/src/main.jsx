@@ -3,7 +3,7 @@
 /** @import { Core, Opened, State, Texts, Visit } from './types.js' */
 /** @import { Store } from './store.js' */
 import { render } from 'preact';
-import { startCore, StartError } from './bindings.js';
+import { StartError, startCore } from './bindings.js';
 import { today } from './commands.js';
 import { findDrafts, keepDraft, keptMode } from './drafts.js';
 import { saveFile } from './files.js';
@@ -138,14 +138,20 @@ function inPrint(printing) {
 function refuse(place, texts, problem) {
   const altered = problem instanceof StartError && problem.altered;
   document.documentElement.dataset.state = altered ? 'altered' : 'failed';
-  const sentence = problem instanceof Error ? problem.message : (/** @type {{ sentence?: string }} */ (problem)?.sentence ?? String(problem));
+  const sentence = problem instanceof StartError ? problem.message : refusal(problem).sentence;
   const keep = () => saveFile(texts.visit, 'recovered.visit.json', 'application/json');
   render(
     <main class="altered">
       <h1>{altered ? 'This file is not as it was saved' : 'This page cannot start here'}</h1>
-      <p class="lead" role="alert">{sentence}</p>
+      <p class="lead" role="alert">
+        {sentence}
+      </p>
       <p>No value is shown.</p>
-      {texts.visit.trim() !== 'null' && texts.visit !== '' && <button type="button" onClick={keep}>Take the data inside away as JSON, unchecked</button>}
+      {texts.visit.trim() !== 'null' && texts.visit !== '' && (
+        <button type="button" onClick={keep}>
+          Take the data inside away as JSON, unchecked
+        </button>
+      )}
     </main>,
     place,
   );

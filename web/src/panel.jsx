@@ -17,14 +17,19 @@ export function PanelFrame({ title, onClose, children, wide, low }) {
   }, []);
   return (
     <section
-      ref={frame} class={`panel${wide ? ' wide' : ''}${low ? ' low' : ''}`} role="dialog" aria-label={title}
+      ref={frame}
+      class={`panel${wide ? ' wide' : ''}${low ? ' low' : ''}`}
+      role="dialog"
+      aria-label={title}
       onKeyDown={(event) => {
         if (event.key === 'Escape') onClose();
       }}
     >
       <header>
         <h2 tabIndex={-1}>{title}</h2>
-        <button type="button" class="quiet" onClick={onClose}>Close</button>
+        <button type="button" class="quiet" onClick={onClose}>
+          Close
+        </button>
       </header>
       <div class="panel-body">{children}</div>
     </section>

@@ -21,7 +21,17 @@ const SHADOW = 44;
 export function inksOf(element) {
   const style = getComputedStyle(element);
   const ink = (/** @type {string} */ name) => style.getPropertyValue(name).trim();
-  return { ink: ink('--ink'), muted: ink('--muted'), grid: ink('--grid'), leaf: ink('--leaf'), band: ink('--band'), wide: ink('--band-wide'), card: ink('--card'), ochre: ink('--ochre'), shadow: ink('--shadow') };
+  return {
+    ink: ink('--ink'),
+    muted: ink('--muted'),
+    grid: ink('--grid'),
+    leaf: ink('--leaf'),
+    band: ink('--band'),
+    wide: ink('--band-wide'),
+    card: ink('--card'),
+    ochre: ink('--ochre'),
+    shadow: ink('--shadow'),
+  };
 }
 
 /**
@@ -84,7 +94,10 @@ export function paintReadOff(context, frame, x, y, inks) {
   if (x === null) return;
   context.strokeStyle = inks.ink;
   context.lineWidth = 1;
-  stroke(context, [[frame.x(x), MARGIN.top], [frame.x(x), frame.height - MARGIN.bottom]]);
+  stroke(context, [
+    [frame.x(x), MARGIN.top],
+    [frame.x(x), frame.height - MARGIN.bottom],
+  ]);
   if (y === null) return;
   context.beginPath();
   context.arc(frame.x(x), frame.y(y), 3, 0, 2 * Math.PI);
@@ -128,7 +141,10 @@ function axes(context, scene, frame, inks) {
   context.textAlign = 'right';
   for (const tick of frame.yTicks) {
     context.strokeStyle = inks.grid;
-    stroke(context, [[left, crisp(y(tick))], [right, crisp(y(tick))]]);
+    stroke(context, [
+      [left, crisp(y(tick))],
+      [right, crisp(y(tick))],
+    ]);
     context.fillStyle = inks.muted;
     context.fillText(frame.yFormat(tick), left - 8, y(tick));
   }
@@ -136,7 +152,10 @@ function axes(context, scene, frame, inks) {
   context.textBaseline = 'top';
   context.strokeStyle = inks.muted;
   for (const tick of x.ticks(count)) {
-    stroke(context, [[crisp(x(tick)), bottom], [crisp(x(tick)), bottom + 4]]);
+    stroke(context, [
+      [crisp(x(tick)), bottom],
+      [crisp(x(tick)), bottom + 4],
+    ]);
     context.fillText(xFormat(tick), x(tick), bottom + 7);
   }
   context.fillStyle = inks.ink;
@@ -156,7 +175,8 @@ function axes(context, scene, frame, inks) {
  * @param {Inks} inks
  */
 function bands(context, scene, frame, inks) {
-  const edge = (/** @type {'lo'|'hi'|'newLo'|'newHi'} */ side) => scene.curve.filter((place) => Number.isFinite(place[side])).map((place) => pixel(frame, place.x, place[side]));
+  const edge = (/** @type {'lo'|'hi'|'newLo'|'newHi'} */ side) =>
+    scene.curve.filter((place) => Number.isFinite(place[side])).map((place) => pixel(frame, place.x, place[side]));
   area(context, edge('newLo'), edge('newHi'), inks.wide);
   context.strokeStyle = inks.band;
   context.lineWidth = 1;
@@ -176,7 +196,10 @@ function zeroLine(context, scene, frame, inks) {
   if (!scene.signed) return;
   context.strokeStyle = inks.muted;
   context.lineWidth = 1;
-  stroke(context, [[frame.left, crisp(frame.y(0))], [frame.width - MARGIN.right, crisp(frame.y(0))]]);
+  stroke(context, [
+    [frame.left, crisp(frame.y(0))],
+    [frame.width - MARGIN.right, crisp(frame.y(0))],
+  ]);
 }
 
 /**
@@ -190,16 +213,28 @@ function lines(context, scene, frame, inks) {
   const at = (/** @type {(x: number) => boolean} */ keep) => scene.curve.filter(({ x }) => keep(x)).map(({ x, y }) => pixel(frame, x, y));
   context.lineWidth = 2.25;
   context.strokeStyle = inks.leaf;
-  stroke(context, at((x) => !spanned || (x >= spanned[0] && x <= spanned[1])));
+  stroke(
+    context,
+    at((x) => !spanned || (x >= spanned[0] && x <= spanned[1])),
+  );
   context.setLineDash([6, 5]);
   if (spanned) {
-    stroke(context, at((x) => x <= spanned[0]));
-    stroke(context, at((x) => x >= spanned[1]));
+    stroke(
+      context,
+      at((x) => x <= spanned[0]),
+    );
+    stroke(
+      context,
+      at((x) => x >= spanned[1]),
+    );
   }
   context.setLineDash([2, 4]);
   context.lineWidth = 1.5;
   context.strokeStyle = inks.muted;
-  stroke(context, scene.earlier.map(({ x, y }) => pixel(frame, x, y)));
+  stroke(
+    context,
+    scene.earlier.map(({ x, y }) => pixel(frame, x, y)),
+  );
   context.setLineDash([]);
 }
 
@@ -265,8 +300,15 @@ function plumb(context, scene, line, frame, inks) {
   if (line.density) shadow(context, line, frame, inks);
   context.strokeStyle = inks.ink;
   context.lineWidth = 1.5;
-  stroke(context, [[x, y], [x, bottom]]);
-  if (line.indication !== null || (!line.acrossX && line.density)) stroke(context, [[frame.left, y], [x, y]]);
+  stroke(context, [
+    [x, y],
+    [x, bottom],
+  ]);
+  if (line.indication !== null || (!line.acrossX && line.density))
+    stroke(context, [
+      [frame.left, y],
+      [x, y],
+    ]);
   label(context, scene, line, frame, inks);
 }
 
@@ -281,8 +323,16 @@ function shadow(context, line, frame, inks) {
   const greatest = max(density) ?? 0;
   if (!(greatest > 0)) return;
   const bottom = frame.height - MARGIN.bottom;
-  const place = (/** @type {number} */ value, /** @type {number} */ share) => /** @type {[number, number]} */ (line.acrossX ? [frame.x(value), bottom - share * SHADOW] : [frame.left + share * SHADOW, frame.y(value)]);
-  area(context, at.map((value) => place(value, 0)), at.map((value, index) => place(value, density[index] / greatest)), inks.shadow);
+  const place = (/** @type {number} */ value, /** @type {number} */ share) =>
+    /** @type {[number, number]} */ (
+      line.acrossX ? [frame.x(value), bottom - share * SHADOW] : [frame.left + share * SHADOW, frame.y(value)]
+    );
+  area(
+    context,
+    at.map((value) => place(value, 0)),
+    at.map((value, index) => place(value, density[index] / greatest)),
+    inks.shadow,
+  );
 }
 
 /**

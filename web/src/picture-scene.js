@@ -53,14 +53,23 @@ export function sceneOf(state) {
   const curve = drawn ? curvePlaces(drawn.rows, view, orientation) : [];
   const spanned = report?.fit?.spanned ?? null;
   const marks = (report?.points ?? []).flatMap((row) => markOf(state, row, view) ?? []);
-  const [xUnit, yUnit] = orientation === 'indication_from_reference' ? [visit.instrument?.unit ?? '', outputUnit(visit)] : [outputUnit(visit), visit.instrument?.unit ?? ''];
+  const [xUnit, yUnit] =
+    orientation === 'indication_from_reference'
+      ? [visit.instrument?.unit ?? '', outputUnit(visit)]
+      : [outputUnit(visit), visit.instrument?.unit ?? ''];
   return {
-    view, curve, spanned, marks,
+    view,
+    curve,
+    spanned,
+    marks,
     x: [drawn?.first ?? 0, drawn?.last ?? 1],
     y: heightOf(curve, marks, spanned),
     signed: view !== 'value' || names.response === 'correction',
     xLabel: withUnit(names.argument, xUnit),
-    yLabel: withUnit({ error: 'error of indication', residuals: `${names.response} minus curve` }[/** @type {'error'} */ (view)] ?? names.response, yUnit),
+    yLabel: withUnit(
+      { error: 'error of indication', residuals: `${names.response} minus curve` }[/** @type {'error'} */ (view)] ?? names.response,
+      yUnit,
+    ),
     earlier: asFoundCurve && view !== 'residuals' ? earlierPlaces(asFoundCurve, view, orientation) : [],
     plumb: answer.value?.value ? plumbOf(state, answer.value, curve, view) : null,
   };
@@ -98,7 +107,8 @@ function curvePlaces(rows, view, orientation) {
   const places = [];
   for (let at = 0; at + COLUMNS <= rows.length; at += COLUMNS) {
     const [x, estimate, , lo, hi, newLo, newHi, nominal] = rows.subarray(at, at + COLUMNS);
-    const seen = (/** @type {number} */ value) => (view === 'error' ? asError(orientation, value, nominal) : view === 'residuals' ? value - estimate : value);
+    const seen = (/** @type {number} */ value) =>
+      view === 'error' ? asError(orientation, value, nominal) : view === 'residuals' ? value - estimate : value;
     places.push({ x, y: seen(estimate), lo: seen(lo), hi: seen(hi), newLo: seen(newLo), newHi: seen(newHi) });
   }
   return places.filter((place) => Number.isFinite(place.y));
@@ -111,7 +121,10 @@ function curvePlaces(rows, view, orientation) {
  */
 function earlierPlaces(curve, view, orientation) {
   const { x, estimate, nominal } = curve;
-  return x.map((place, at) => ({ x: place, y: view === 'error' && nominal ? asError(orientation, estimate[at], nominal[at]) : estimate[at] }));
+  return x.map((place, at) => ({
+    x: place,
+    y: view === 'error' && nominal ? asError(orientation, estimate[at], nominal[at]) : estimate[at],
+  }));
 }
 
 /**
@@ -126,7 +139,14 @@ function markOf(state, row, view) {
   const point = pointsOf(visit)[row.point];
   const y = view === 'error' ? row.error : view === 'residuals' ? row.residual : responseOf(orientation, row);
   if (y === null || y === undefined || !point) return null;
-  return { x: argumentOf(orientation, row), y, bar: row.expanded_uncertainty, aside: (point.set_aside ?? null) !== null, glyph: glyphOf(point, report?.state), point: row.point };
+  return {
+    x: argumentOf(orientation, row),
+    y,
+    bar: row.expanded_uncertainty,
+    aside: (point.set_aside ?? null) !== null,
+    glyph: glyphOf(point, report?.state),
+    point: row.point,
+  };
 }
 
 /**
@@ -153,7 +173,14 @@ function plumbOf({ visit }, reading, curve, view) {
   const { density, median } = value;
   if (orientationOf(visit) === 'indication_from_reference') {
     const y = heightAt(curve, median);
-    return { x: median, y, label: value.display, acrossX: true, indication: view === 'value' ? reading.mean_indication : null, density: { at: density.x, density: density.density } };
+    return {
+      x: median,
+      y,
+      label: value.display,
+      acrossX: true,
+      indication: view === 'value' ? reading.mean_indication : null,
+      density: { at: density.x, density: density.density },
+    };
   }
   const x = reading.mean_indication;
   const shift = orientationOf(visit) === 'correction_from_indication' ? x : 0;
@@ -171,7 +198,11 @@ function plumbOf({ visit }, reading, curve, view) {
  */
 function heightOf(curve, marks, spanned) {
   const inside = spanned ? curve.filter(({ x }) => x >= spanned[0] && x <= spanned[1]) : [];
-  const [low, high] = extent([...marks.flatMap(({ y, bar }) => [y - (bar ?? 0), y + (bar ?? 0)]), ...inside.flatMap(({ newLo, newHi }) => [newLo, newHi])].filter(Number.isFinite));
+  const [low, high] = extent(
+    [...marks.flatMap(({ y, bar }) => [y - (bar ?? 0), y + (bar ?? 0)]), ...inside.flatMap(({ newLo, newHi }) => [newLo, newHi])].filter(
+      Number.isFinite,
+    ),
+  );
   if (low === undefined || high === undefined) return [-1, 1];
   const [allLow = low, allHigh = high] = extent(curve.flatMap(({ newLo, newHi }) => [newLo, newHi]).filter(Number.isFinite));
   const height = high - low || Math.abs(high) || 1;

@@ -16,7 +16,12 @@ export function PictureTable({ core, store, state }) {
   return useMemo(
     () => (
       <div class="picture-table" tabIndex={0} role="region" aria-label="The picture as figures">
-        {answer.value?.value && <p>Reading {answer.value.indications.map(String).join('; ')} {report?.units.output}: {answer.value.value.display}, {answer.value.value.display_interval}.</p>}
+        {answer.value?.value && (
+          <p>
+            Reading {answer.value.indications.map(String).join('; ')} {report?.units.output}: {answer.value.value.display},{' '}
+            {answer.value.value.display_interval}.
+          </p>
+        )}
         <CurveFigures {...{ core, store, report, drawn }} />
         <PointFigures core={core} report={report} visit={visit} />
       </div>
@@ -37,8 +42,22 @@ function CurveFigures({ core, store, report, drawn }) {
   const [from, to] = spanned;
   return (
     <table class="figures">
-      <caption>The curve{argument && `, ${variable} in ${argument}`}{response && `, the others in ${response}`}</caption>
-      <thead><tr><th scope="col">{variable}</th>{hasError && <th scope="col">error of the curve</th>}<th scope="col">curve</th><th scope="col">band of the curve</th><th scope="col">new indication</th><th scope="col"><span class="unseen">remark</span></th></tr></thead>
+      <caption>
+        The curve{argument && `, ${variable} in ${argument}`}
+        {response && `, the others in ${response}`}
+      </caption>
+      <thead>
+        <tr>
+          <th scope="col">{variable}</th>
+          {hasError && <th scope="col">error of the curve</th>}
+          <th scope="col">curve</th>
+          <th scope="col">band of the curve</th>
+          <th scope="col">new indication</th>
+          <th scope="col">
+            <span class="unseen">remark</span>
+          </th>
+        </tr>
+      </thead>
       <tbody>
         {rows.map(([x, estimate, , lo, hi, newLo, newHi, nominal]) => (
           <tr key={x}>
@@ -66,7 +85,22 @@ function PointFigures({ core, report, visit }) {
   return (
     <table class="figures">
       <caption>The points, in the units of the table of points</caption>
-      <thead><tr><th scope="col">row</th><th scope="col">reference</th><th scope="col">indication</th><th scope="col">error</th><th scope="col">error, % of span</th><th scope="col">± U</th><th scope="col">minus curve</th><th scope="col">leverage</th><th scope="col">left-out tail</th><th scope="col"><span class="unseen">remark</span></th></tr></thead>
+      <thead>
+        <tr>
+          <th scope="col">row</th>
+          <th scope="col">reference</th>
+          <th scope="col">indication</th>
+          <th scope="col">error</th>
+          <th scope="col">error, % of span</th>
+          <th scope="col">± U</th>
+          <th scope="col">minus curve</th>
+          <th scope="col">leverage</th>
+          <th scope="col">left-out tail</th>
+          <th scope="col">
+            <span class="unseen">remark</span>
+          </th>
+        </tr>
+      </thead>
       <tbody>
         {rows.slice(0, ROWS_SHOWN).map((row) => (
           <tr key={`${row.point}.${row.repeat}`} class={row.used ? undefined : 'aside'}>
@@ -83,7 +117,11 @@ function PointFigures({ core, report, visit }) {
           </tr>
         ))}
       </tbody>
-      {rows.length > ROWS_SHOWN && <caption>The first {ROWS_SHOWN} of {rows.length} indications are shown; the report has all.</caption>}
+      {rows.length > ROWS_SHOWN && (
+        <caption>
+          The first {ROWS_SHOWN} of {rows.length} indications are shown; the report has all.
+        </caption>
+      )}
     </table>
   );
 }

@@ -21,15 +21,30 @@ export function Picture({ core, store, state, dispatch, plain }) {
   return (
     <section class="picture" aria-labelledby="picture-title">
       <div class="part-head">
-        <h2 id="picture-title" class={plain ? 'unseen' : undefined}>Picture</h2>
+        <h2 id="picture-title" class={plain ? 'unseen' : undefined}>
+          Picture
+        </h2>
         {said && view !== 'table' ? <p class="read-off">{said}</p> : <Legend state={state} view={view} />}
         {!plain && (
           <div class="views" role="group" aria-label="View">
-            {viewsOf(state).map((name) => <button key={name} type="button" aria-pressed={name === view} onClick={() => dispatch({ type: 'show', change: { view: name } })}>{name}</button>)}
+            {viewsOf(state).map((name) => (
+              <button
+                key={name}
+                type="button"
+                aria-pressed={name === view}
+                onClick={() => dispatch({ type: 'show', change: { view: name } })}
+              >
+                {name}
+              </button>
+            ))}
           </div>
         )}
       </div>
-      {view === 'table' ? <PictureTable {...{ core, store, state, dispatch }} /> : <Canvas {...{ core, store, state, dispatch, place, setPlace, said }} />}
+      {view === 'table' ? (
+        <PictureTable {...{ core, store, state, dispatch }} />
+      ) : (
+        <Canvas {...{ core, store, state, dispatch, place, setPlace, said }} />
+      )}
     </section>
   );
 }
@@ -51,7 +66,13 @@ function Canvas({ core, store, state, dispatch, place, setPlace, said }) {
   useEffect(() => {
     const context = prepared(over.current, size);
     if (!context || !frame.current || !box.current) return;
-    paintReadOff(context, frame.current, place, place === null || scene.curve.length === 0 ? null : heightAt(scene.curve, place), inksOf(box.current));
+    paintReadOff(
+      context,
+      frame.current,
+      place,
+      place === null || scene.curve.length === 0 ? null : heightAt(scene.curve, place),
+      inksOf(box.current),
+    );
   }, [place, scene, size, repaints]);
 
   const [first, last] = scene.x;
@@ -69,7 +90,13 @@ function Canvas({ core, store, state, dispatch, place, setPlace, said }) {
     if (mark) dispatch({ type: 'panel', panel: { name: 'point', point: mark.point } });
   };
   const key = (/** @type {KeyboardEvent} */ event) => {
-    const next = afterKey(event, place ?? (first + last) / 2, first, last, scene.marks.map((mark) => mark.x));
+    const next = afterKey(
+      event,
+      place ?? (first + last) / 2,
+      first,
+      last,
+      scene.marks.map((mark) => mark.x),
+    );
     if (event.key === 'Escape') setPlace(null);
     if (event.key === 'Enter' && place !== null) {
       const mark = scene.marks.find(({ x }) => x === place);
@@ -83,11 +110,22 @@ function Canvas({ core, store, state, dispatch, place, setPlace, said }) {
   return (
     <div class="canvas-box" ref={box}>
       <canvas ref={base} role="img" aria-label={summary(core, store, state)} />
-      <canvas ref={over} aria-hidden="true" />
+      <canvas ref={over} />
       <div
-        class="read-off-surface" role="slider" tabIndex={0} aria-label="Read off the curve: arrow keys move, up and down go from point to point, Enter opens the point"
-        aria-valuemin={first} aria-valuemax={last} aria-valuenow={now} aria-valuetext={said ?? 'not reading off'}
-        onPointerMove={move} onPointerDown={move} onPointerLeave={(event) => event.pointerType === 'mouse' && setPlace(null)} onBlur={() => setPlace(null)} onClick={open} onKeyDown={key}
+        class="read-off-surface"
+        role="slider"
+        tabIndex={0}
+        aria-label="Read off the curve: arrow keys move, up and down go from point to point, Enter opens the point"
+        aria-valuemin={first}
+        aria-valuemax={last}
+        aria-valuenow={now}
+        aria-valuetext={said ?? 'not reading off'}
+        onPointerMove={move}
+        onPointerDown={move}
+        onPointerLeave={(event) => event.pointerType === 'mouse' && setPlace(null)}
+        onBlur={() => setPlace(null)}
+        onClick={open}
+        onKeyDown={key}
       />
     </div>
   );

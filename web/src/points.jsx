@@ -1,13 +1,13 @@
 // The table of points: typed into, pasted into, dropped onto. Every row says what is wrong with it.
 
 /** @import { Parts } from './store.js' */
-/** @import { Point, PointReport, PointState, Problem, State } from './types.js' */
+/** @import { Point, PointReport, Problem } from './types.js' */
 import { useMemo, useRef, useState } from 'preact/hooks';
 import { readPieces, rowTrouble, shownText, toCell } from './cells.js';
+import { chooseAndOpen, fillDown } from './commands.js';
 import { TwoWays } from './fields.jsx';
 import { cellChange, columnsOf, pointsOf, withPoint } from './visit.js';
 import { stateWords } from './words.js';
-import { chooseAndOpen, fillDown } from './commands.js';
 
 const ROWS_SHOWN = 200;
 const IDLE = 800;
@@ -29,30 +29,69 @@ export function Points({ core, store, state, dispatch }) {
       <div class="part-head">
         <h2 id="points-title">Points</h2>
         <span class="head-tools">
-          <label class="inline">New rows <StateChoice value={entering} onChoose={(value) => dispatch({ type: 'show', change: { entering: value } })} /></label>
-          <button type="button" class="change" onClick={() => chooseAndOpen(core, store)}>from file</button>
+          <label class="inline">
+            New rows{' '}
+            <select value={entering} onChange={(event) => dispatch({ type: 'show', change: { entering: event.currentTarget.value } })}>
+              <option value="as_found">as found</option>
+              <option value="as_left">as left</option>
+            </select>
+          </label>
+          <button type="button" class="change" onClick={() => chooseAndOpen(core, store)}>
+            from file
+          </button>
         </span>
       </div>
       <div class="table-frame" tabIndex={-1}>
-        <table class="grid" onKeyDown={(event) => navigate(event, columns.map((column) => column.id))} onPaste={(event) => fillDown(event, core, store)}>
+        <table
+          class="grid"
+          onKeyDown={(event) =>
+            navigate(
+              event,
+              columns.map((column) => column.id),
+            )
+          }
+          onPaste={(event) => fillDown(event, core, store)}
+        >
           <thead>
             <tr>
-              <th scope="col"><span class="unseen">row</span></th>
-              {columns.map((column) => <th key={column.id} scope="col" class="number">{column.label}<small>{column.unit}</small></th>)}
-              {hasError && <th scope="col" class="number">error<small>{unit}</small></th>}
-              <th scope="col"><span class="unseen">approach</span></th>
+              <th scope="col">
+                <span class="unseen">row</span>
+              </th>
+              {columns.map((column) => (
+                <th key={column.id} scope="col" class="number">
+                  {column.label}
+                  <small>{column.unit}</small>
+                </th>
+              ))}
+              {hasError && (
+                <th scope="col" class="number">
+                  error<small>{unit}</small>
+                </th>
+              )}
+              <th scope="col">
+                <span class="unseen">approach</span>
+              </th>
               {bothStates && <th scope="col">state</th>}
-              <th scope="col"><span class="unseen">more</span></th>
+              <th scope="col">
+                <span class="unseen">more</span>
+              </th>
             </tr>
           </thead>
           <tbody>
             {rows.map((index) => (
-              <Row key={index} {...{ core, store, state, dispatch, index, columns, hasError, bothStates }} point={points[index]} known={byPoint.get(index)} />
+              <Row
+                key={index}
+                {...{ core, store, state, dispatch, index, columns, hasError, bothStates }}
+                point={points[index]}
+                known={byPoint.get(index)}
+              />
             ))}
           </tbody>
         </table>
       </div>
-      {points.length > ROWS_SHOWN && <Pager first={first} last={last} count={points.length} onGo={(row) => dispatch({ type: 'show', change: { firstRow: row } })} />}
+      {points.length > ROWS_SHOWN && (
+        <Pager first={first} last={last} count={points.length} onGo={(row) => dispatch({ type: 'show', change: { firstRow: row } })} />
+      )}
     </section>
   );
 }
@@ -74,20 +113,54 @@ function Row({ core, store, dispatch, index, point, columns, known, hasError, bo
       <>
         <tr class={classes || undefined}>
           <th scope="row">{index + 1}</th>
-          {columns.map((column) => <td key={column.id}><CellField {...{ core, store, index, column, point }} bad={trouble?.column === column.id} /></td>)}
-          {hasError && <td class="number error">{(known?.rows ?? []).map((row) => row.error_display).filter(Boolean).join('; ')}</td>}
+          {columns.map((column) => (
+            <td key={column.id}>
+              <CellField {...{ core, store, index, column, point }} bad={trouble?.column === column.id} />
+            </td>
+          ))}
+          {hasError && (
+            <td class="number error">
+              {(known?.rows ?? [])
+                .map((row) => row.error_display)
+                .filter(Boolean)
+                .join('; ')}
+            </td>
+          )}
           <td class="narrow">{point && <ApproachButton {...{ store, index, point }} />}</td>
           {bothStates && <td>{point && stateWords(point.state)}</td>}
-          <td class="narrow">{point && <button type="button" class="icon quiet" aria-label={`Row ${index + 1}: set aside, state and details`} onClick={() => dispatch({ type: 'panel', panel: { name: 'point', point: index } })}>⋯</button>}</td>
+          <td class="narrow">
+            {point && (
+              <button
+                type="button"
+                class="icon quiet"
+                aria-label={`Row ${index + 1}: set aside, state and details`}
+                onClick={() => dispatch({ type: 'panel', panel: { name: 'point', point: index } })}
+              >
+                ⋯
+              </button>
+            )}
+          </td>
         </tr>
         {(marked || aside !== null) && (
           <tr class={`row-note ${classes}`}>
             <td />
             <td colSpan={width - 1} id={`row-note-${index}`}>
               {aside !== null && <span>Set aside: {aside}. </span>}
-              {trouble?.alternatives && <TwoWays text={trouble.text} alternatives={trouble.alternatives} onChoose={(values) => commit(store, index, trouble.column, trouble.text, values)} />}
-              {trouble?.sentence && <span>“{trouble.text}”: {trouble.sentence} </span>}
-              {messages.map((message) => <span key={message.code + message.sentence}>{message.sentence} </span>)}
+              {trouble?.alternatives && (
+                <TwoWays
+                  text={trouble.text}
+                  alternatives={trouble.alternatives}
+                  onChoose={(values) => commit(store, index, trouble.column, trouble.text, values)}
+                />
+              )}
+              {trouble?.sentence && (
+                <span>
+                  “{trouble.text}”: {trouble.sentence}{' '}
+                </span>
+              )}
+              {messages.map((message) => (
+                <span key={message.code + message.sentence}>{message.sentence} </span>
+              ))}
             </td>
           </tr>
         )}
@@ -108,8 +181,15 @@ function CellField({ core, store, index, column, point, bad }) {
   };
   return (
     <input
-      class="cell" inputmode="decimal" autocomplete="off" value={shown} data-row={index} data-column={column.id}
-      aria-label={`${column.label}, row ${index + 1}`} aria-invalid={bad ? 'true' : undefined} aria-describedby={bad ? `row-note-${index}` : undefined}
+      class="cell"
+      inputmode="decimal"
+      autocomplete="off"
+      value={shown}
+      data-row={index}
+      data-column={column.id}
+      aria-label={`${column.label}, row ${index + 1}`}
+      aria-invalid={bad ? 'true' : undefined}
+      aria-describedby={bad ? `row-note-${index}` : undefined}
       onInput={(event) => {
         const text = event.currentTarget.value;
         setDraft(text);
@@ -121,7 +201,8 @@ function CellField({ core, store, index, column, point, bad }) {
         clearTimeout(idle.current);
         setDraft(null);
       }}
-      onFocus={(event) => event.currentTarget.select()} onBlur={leave}
+      onFocus={(event) => event.currentTarget.select()}
+      onBlur={leave}
     />
   );
 }
@@ -134,22 +215,22 @@ function ApproachButton({ store, index, point }) {
   const words = { up: 'approached rising', down: 'approached falling' };
   const change = () => {
     const { visit, entering } = store.state();
-    store.dispatch({ type: 'edit', visit: withPoint(visit, index, { approach: next }, entering), what: `approach of row ${index + 1}`, merge: `approach:${index}` });
+    store.dispatch({
+      type: 'edit',
+      visit: withPoint(visit, index, { approach: next }, entering),
+      what: `approach of row ${index + 1}`,
+      merge: `approach:${index}`,
+    });
   };
   return (
-    <button type="button" class="icon quiet" aria-label={`Row ${index + 1}: ${approach ? words[approach] : 'approach not recorded'}; change`} onClick={change}>
+    <button
+      type="button"
+      class="icon quiet"
+      aria-label={`Row ${index + 1}: ${approach ? words[approach] : 'approach not recorded'}; change`}
+      onClick={change}
+    >
       {approach === 'up' ? '↑' : approach === 'down' ? '↓' : '–'}
     </button>
-  );
-}
-
-/** @param {{ value: PointState, onChoose: (value: PointState) => void }} props */
-function StateChoice({ value, onChoose }) {
-  return (
-    <select value={value} onChange={(event) => onChoose(/** @type {PointState} */ (event.currentTarget.value))}>
-      <option value="as_found">as found</option>
-      <option value="as_left">as left</option>
-    </select>
   );
 }
 
@@ -157,9 +238,13 @@ function StateChoice({ value, onChoose }) {
 function Pager({ first, last, count, onGo }) {
   return (
     <p class="pager">
-      <button type="button" class="small" disabled={first === 0} onClick={() => onGo(Math.max(0, first - ROWS_SHOWN))}>Earlier</button>
+      <button type="button" class="small" disabled={first === 0} onClick={() => onGo(Math.max(0, first - ROWS_SHOWN))}>
+        Earlier
+      </button>
       rows {first + 1} to {last} of {count}
-      <button type="button" class="small" disabled={last >= count} onClick={() => onGo(last)}>Later</button>
+      <button type="button" class="small" disabled={last >= count} onClick={() => onGo(last)}>
+        Later
+      </button>
     </p>
   );
 }
@@ -212,7 +297,12 @@ function commit(store, index, column, text, values) {
   const { visit, entering } = store.state();
   const point = pointsOf(visit)[index];
   const change = cellChange(point, column, text.trim(), toCell(values, column));
-  store.dispatch({ type: 'edit', visit: withPoint(visit, index, change, entering), what: `row ${index + 1}, ${column.replace('influence:', '')}`, merge: `cell:${index}:${column}` });
+  store.dispatch({
+    type: 'edit',
+    visit: withPoint(visit, index, change, entering),
+    what: `row ${index + 1}, ${column.replace('influence:', '')}`,
+    merge: `cell:${index}:${column}`,
+  });
 }
 
 /**
@@ -276,5 +366,3 @@ function focusCell(table, row, column) {
 function cellAt(table, row, column) {
   return table?.querySelector(`input[data-row="${row}"][data-column="${CSS.escape(column)}"]`) ?? null;
 }
-
-/** @typedef {State} _State */

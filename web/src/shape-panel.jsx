@@ -28,11 +28,18 @@ export function ShapePanel({ core, state, dispatch, onClose }) {
   const names = [variable, ...influencesOf(visit)];
   return (
     <PanelFrame title="Shape" onClose={onClose} low>
-      <p>The curves that are thought of. More terms bend more and need more points. At present: <strong>{report?.fit?.formula ?? present}</strong></p>
+      <p>
+        The curves that are thought of. More terms bend more and need more points. At present:{' '}
+        <strong>{report?.fit?.formula ?? present}</strong>
+      </p>
       <div class="buttons">
         {NAMES.map((name, degree) => {
           const terms = polynomial(variable, degree);
-          return <button key={name} type="button" aria-pressed={present === terms.join(', ')} onClick={() => attempt(terms)}>{name}</button>;
+          return (
+            <button key={name} type="button" aria-pressed={present === terms.join(', ')} onClick={() => attempt(terms)}>
+              {name}
+            </button>
+          );
         })}
       </div>
       <form
@@ -43,12 +50,26 @@ export function ShapePanel({ core, state, dispatch, onClose }) {
         }}
       >
         <label for="terms">Terms, with commas between</label>
-        <textarea id="terms" rows={2} spellcheck={false} autocomplete="off" value={draft ?? present} aria-invalid={wrong ? 'true' : undefined} aria-describedby="terms-hint" onInput={(event) => setDraft(event.currentTarget.value)} />
+        <textarea
+          id="terms"
+          rows={2}
+          spellcheck={false}
+          autocomplete="off"
+          value={draft ?? present}
+          aria-invalid={wrong ? 'true' : undefined}
+          aria-describedby="terms-hint"
+          onInput={(event) => setDraft(event.currentTarget.value)}
+        />
         <div id="terms-hint">
           {wrong && <WrongTerms problem={wrong} />}
-          <p class="hint">In {names.join(', ')}: for instance 1, {variable}, {variable}^2 · 1/{variable} · ln({variable}) · exp({variable}) · sqrt({variable}) · sin(2*pi*{variable}){names.length > 1 && ` · ${variable}*${names[1]}`}</p>
+          <p class="hint">
+            In {names.join(', ')}: for instance 1, {variable}, {variable}^2 · 1/{variable} · ln({variable}) · exp({variable}) · sqrt(
+            {variable}) · sin(2*pi*{variable}){names.length > 1 && ` · ${variable}*${names[1]}`}
+          </p>
         </div>
-        <button type="submit" disabled={draft === null || draft === present}>Use these terms</button>
+        <button type="submit" disabled={draft === null || draft === present}>
+          Use these terms
+        </button>
       </form>
     </PanelFrame>
   );
@@ -64,7 +85,15 @@ function WrongTerms({ problem }) {
   const at = typeof position === 'number' ? position : null;
   return (
     <div class="trouble">
-      {letters.length > 0 && at !== null && <p class="term"><code>{letters.slice(0, at).join('')}<mark>{letters[at] ?? ' '}</mark>{letters.slice(at + 1).join('')}</code></p>}
+      {letters.length > 0 && at !== null && (
+        <p class="term">
+          <code>
+            {letters.slice(0, at).join('')}
+            <mark>{letters[at] ?? ' '}</mark>
+            {letters.slice(at + 1).join('')}
+          </code>
+        </p>
+      )}
       <p>{problem.sentence} The shape stays as it was.</p>
     </div>
   );

@@ -1,10 +1,10 @@
 // The sheet as a whole: open, start anew, take away, appearance, about.
 
+import { chooseAndOpen, DEMOS, loadDemo, newSheet, replaceBy, saveCurve, saveReport, saveVisit } from './commands.js';
 /** @import { Parts } from './store.js' */
 import { dropDraft, keepMode } from './drafts.js';
 import { Choice } from './fields.jsx';
 import { PanelFrame } from './panel.jsx';
-import { chooseAndOpen, DEMOS, loadDemo, newSheet, replaceBy, saveCurve, saveReport, saveVisit } from './commands.js';
 import { CAUTION } from './words.js';
 
 /** @param {Parts & { onClose: () => void }} props */
@@ -21,23 +21,51 @@ export function SheetPanel({ core, store, state, dispatch, onClose }) {
     <PanelFrame title="Sheet" onClose={onClose}>
       <h3>Open</h3>
       <div class="stack">
-        <button type="button" onClick={then(() => chooseAndOpen(core, store))}>A leaf, a visit or a table of points…</button>
-        {DEMOS.map((demo) => <button key={demo.name} type="button" onClick={then(() => loadDemo(core, store, demo.visit))}>Demo: {demo.name}<small>{demo.hint}; invented</small></button>)}
-        <button type="button" onClick={then(() => newSheet(store))}>New sheet</button>
+        <button type="button" onClick={then(() => chooseAndOpen(core, store))}>
+          A leaf, a visit or a table of points…
+        </button>
+        {DEMOS.map((demo) => (
+          <button key={demo.name} type="button" onClick={then(() => loadDemo(core, store, demo.visit))}>
+            Demo: {demo.name}
+            <small>{demo.hint}; invented</small>
+          </button>
+        ))}
+        <button type="button" onClick={then(() => newSheet(store))}>
+          New sheet
+        </button>
       </div>
       <Drafts {...{ core, store, state, dispatch }} onClose={onClose} />
       <h3>Leave behind</h3>
       <div class="stack">
-        <button type="button" onClick={then(() => globalThis.print())}>Print…</button>
-        <button type="button" onClick={then(() => saveVisit(core, store))}>Visit as JSON<small>everything that was done and said</small></button>
-        <button type="button" onClick={then(() => saveReport(core, store))}>Report as JSON<small>everything that follows from it</small></button>
-        <button type="button" disabled={!state.report?.fit} onClick={then(() => saveCurve(store))}>Curve as CSV<small>both bands, as drawn</small></button>
+        <button type="button" onClick={then(() => globalThis.print())}>
+          Print…
+        </button>
+        <button type="button" onClick={then(() => saveVisit(core, store))}>
+          Visit as JSON<small>everything that was done and said</small>
+        </button>
+        <button type="button" onClick={then(() => saveReport(core, store))}>
+          Report as JSON<small>everything that follows from it</small>
+        </button>
+        <button type="button" disabled={!state.report?.fit} onClick={then(() => saveCurve(store))}>
+          Curve as CSV<small>both bands, as drawn</small>
+        </button>
       </div>
       <Choice
-        label="Appearance" value={state.mode} onChoose={mode}
-        options={[{ value: 'auto', label: 'as the computer is set' }, { value: 'light', label: 'light' }, { value: 'dark', label: 'dark' }, { value: 'sunlight', label: 'sunlight, most contrast' }]}
+        label="Appearance"
+        value={state.mode}
+        onChoose={mode}
+        options={[
+          { value: 'auto', label: 'as the computer is set' },
+          { value: 'light', label: 'light' },
+          { value: 'dark', label: 'dark' },
+          { value: 'sunlight', label: 'sunlight, most contrast' },
+        ]}
       />
-      <div class="stack"><button type="button" onClick={() => dispatch({ type: 'panel', panel: { name: 'about' } })}>About this program, caution, licences</button></div>
+      <div class="stack">
+        <button type="button" onClick={() => dispatch({ type: 'panel', panel: { name: 'about' } })}>
+          About this program, caution, licences
+        </button>
+      </div>
       <p class="hint">{CAUTION}</p>
     </PanelFrame>
   );
@@ -52,7 +80,10 @@ export function Drafts({ core, store, state, dispatch, onClose }) {
   };
   const resume = (/** @type {import('./types.js').Draft} */ draft) => {
     onClose();
-    replaceBy(core, store, draft.visit, 'draft taken up again', { level: 'note', sentence: 'A draft that this browser had kept. It is not saved: save the leaf when it is done.' });
+    replaceBy(core, store, draft.visit, 'draft taken up again', {
+      level: 'note',
+      sentence: 'A draft that this browser had kept. It is not saved: save the leaf when it is done.',
+    });
   };
   return (
     <>
@@ -60,9 +91,16 @@ export function Drafts({ core, store, state, dispatch, onClose }) {
       <ul class="plain drafts">
         {state.drafts.map((draft) => (
           <li key={draft.key}>
-            <span>{draft.title}<small>{draftWords(draft)}</small></span>
-            <button type="button" class="small" onClick={() => resume(draft)}>Take up</button>
-            <button type="button" class="small" aria-label={`Discard the draft ${draft.title}`} onClick={() => drop(draft.key)}>Discard</button>
+            <span>
+              {draft.title}
+              <small>{draftWords(draft)}</small>
+            </span>
+            <button type="button" class="small" onClick={() => resume(draft)}>
+              Take up
+            </button>
+            <button type="button" class="small" aria-label={`Discard the draft ${draft.title}`} onClick={() => drop(draft.key)}>
+              Discard
+            </button>
           </li>
         ))}
       </ul>

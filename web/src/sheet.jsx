@@ -60,8 +60,15 @@ export function Sheet({ core, store }) {
 }
 
 const PANELS = /** @type {Record<string, (props: any) => import('preact').VNode|null>} */ ({
-  details: DetailsPanel, sheet: SheetPanel, shape: ShapePanel, known: KnownPanel, noise: NoisePanel, coverage: CoveragePanel,
-  orientation: OrientationPanel, nominal: NominalPanel, budget: BudgetPanel,
+  details: DetailsPanel,
+  sheet: SheetPanel,
+  shape: ShapePanel,
+  known: KnownPanel,
+  noise: NoisePanel,
+  coverage: CoveragePanel,
+  orientation: OrientationPanel,
+  nominal: NominalPanel,
+  budget: BudgetPanel,
 });
 
 /** @param {import('./store.js').Parts} parts */
@@ -70,7 +77,8 @@ function OpenPanel(parts) {
   const close = () => parts.dispatch({ type: 'panel', panel: null });
   if (!panel) return null;
   if (panel.name === 'about') return <About core={parts.core} onClose={close} />;
-  if (panel.name === 'point' && panel.point !== undefined) return <PointPanel key={panel.point} {...parts} index={panel.point} onClose={close} />;
+  if (panel.name === 'point' && panel.point !== undefined)
+    return <PointPanel key={panel.point} {...parts} index={panel.point} onClose={close} />;
   if (panel.name === 'intake' && panel.intake) return <IntakePanel {...parts} intake={panel.intake} onClose={close} />;
   const Named = PANELS[panel.name];
   return Named ? <Named key={panel.name} {...parts} onClose={close} /> : null;
@@ -91,8 +99,12 @@ function Spoken({ core, state }) {
   }, [words]);
   return (
     <>
-      <p class="unseen" aria-live="polite">{spoken}</p>
-      <p class="unseen" aria-live="polite">{said}</p>
+      <p class="unseen" aria-live="polite">
+        {spoken}
+      </p>
+      <p class="unseen" aria-live="polite">
+        {said}
+      </p>
     </>
   );
 }
@@ -107,15 +119,23 @@ function listen(core, store) {
   const { signal } = ending;
   const isSheet = () => store.state().stage === 'sheet';
   document.addEventListener('paste', (event) => isSheet() && pasted(event, core, store), { signal });
-  document.addEventListener('dragover', (event) => {
-    event.preventDefault();
-    if (event.dataTransfer) event.dataTransfer.dropEffect = isSheet() ? 'copy' : 'none';
-  }, { signal });
-  document.addEventListener('drop', (event) => {
-    event.preventDefault();
-    const file = event.dataTransfer?.files[0];
-    if (file && isSheet()) openFile(core, store, file);
-  }, { signal });
+  document.addEventListener(
+    'dragover',
+    (event) => {
+      event.preventDefault();
+      if (event.dataTransfer) event.dataTransfer.dropEffect = isSheet() ? 'copy' : 'none';
+    },
+    { signal },
+  );
+  document.addEventListener(
+    'drop',
+    (event) => {
+      event.preventDefault();
+      const file = event.dataTransfer?.files[0];
+      if (file && isSheet()) openFile(core, store, file);
+    },
+    { signal },
+  );
   document.addEventListener('keydown', (event) => isSheet() && shortcut(event, core, store), { signal });
   return () => ending.abort();
 }

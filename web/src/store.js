@@ -1,10 +1,10 @@
 // The state of the page, in one place: action → visit → report → draw. One reducer says what an action does; after it
 // the store asks the core for whatever follows from the new visit or the new reading, so that nothing shown is stale.
 
-/** @import { Action, Answer, Asked, Core, Notice, Opened, Report, State, Visit } from './types.js' */
+/** @import { Action, Answer, Asked, Core, Notice, Opened, State, Visit } from './types.js' */
 import { firstUnread, readPieces } from './cells.js';
-import { influencesOf, pointsOf } from './visit.js';
 import { drawnRange } from './picture-range.js';
+import { influencesOf, pointsOf } from './visit.js';
 
 const STEPS = 500;
 const PLACES = 241;
@@ -21,11 +21,31 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
   const listeners = new Set();
   /** @type {State} */
   let state = {
-    visit, origin, revision: 0, past: [], future: [], lastMerge: null, saved: null,
-    report: null, drawn: null, asFoundCurve: null, unread: null, busy: false, said: '',
-    reading: firstReading(visit), answer: { problem: null, alternatives: null, value: null },
-    view: 'error', panel: null, notice: null, notesOpen: false, entering: enteringOf(visit), firstRow: 0,
-    opened, stage, drafts: [], mode,
+    visit,
+    origin,
+    revision: 0,
+    past: [],
+    future: [],
+    lastMerge: null,
+    saved: null,
+    report: null,
+    drawn: null,
+    asFoundCurve: null,
+    unread: null,
+    busy: false,
+    said: '',
+    reading: firstReading(visit),
+    answer: { problem: null, alternatives: null, value: null },
+    view: 'error',
+    panel: null,
+    notice: null,
+    notesOpen: false,
+    entering: enteringOf(visit),
+    firstRow: 0,
+    opened,
+    stage,
+    drafts: [],
+    mode,
   };
   state = answered(appraised(state));
 
@@ -127,8 +147,15 @@ function reduce(state, action) {
       return edited(state, action.visit, action.what, action.merge ?? null);
     case 'replace':
       return {
-        ...edited(state, action.visit, action.what, null), origin: action.origin, opened: null, stage: 'sheet', panel: null,
-        reading: firstReading(action.visit), entering: enteringOf(action.visit), firstRow: 0, notice: action.notice ?? null,
+        ...edited(state, action.visit, action.what, null),
+        origin: action.origin,
+        opened: null,
+        stage: 'sheet',
+        panel: null,
+        reading: firstReading(action.visit),
+        entering: enteringOf(action.visit),
+        firstRow: 0,
+        notice: action.notice ?? null,
       };
     case 'undo':
       return stepped(state, state.past, 'past', 'future');
@@ -186,9 +213,15 @@ function stepped(state, steps, from, to) {
   if (!step) return state;
   const here = { ...step, visit: state.visit, origin: state.origin };
   return {
-    ...state, visit: step.visit, origin: step.origin, revision: state.revision + 1, lastMerge: null,
-    [from]: steps.slice(0, -1), [to]: [...state[to], here],
-    notice: passing(state.notice), said: `${from === 'past' ? 'Undone' : 'Done again'}: ${step.what}.`,
+    ...state,
+    visit: step.visit,
+    origin: step.origin,
+    revision: state.revision + 1,
+    lastMerge: null,
+    [from]: steps.slice(0, -1),
+    [to]: [...state[to], here],
+    notice: passing(state.notice),
+    said: `${from === 'past' ? 'Undone' : 'Done again'}: ${step.what}.`,
   };
 }
 
@@ -208,7 +241,8 @@ function answer(core, appraisal, { visit, report, reading }) {
     const text = reading.influences[name] ?? '';
     if (text.trim() === '') continue;
     const pieces = readPieces(core, text);
-    if (pieces.values?.length !== 1) return { problem: `${name}: ${pieces.sentence ?? 'write one number that reads in one way only.'}`, alternatives: null, value: null };
+    if (pieces.values?.length !== 1)
+      return { problem: `${name}: ${pieces.sentence ?? 'write one number that reads in one way only.'}`, alternatives: null, value: null };
     influences[name] = pieces.values[0];
   }
   if (!appraisal || !report?.fit) return { problem: 'There is no curve yet to read a value from.', alternatives: null, value: null };
@@ -249,4 +283,3 @@ export function refusal(problem) {
 /** @typedef {ReturnType<typeof createStore>} Store */
 /** @typedef {Store['dispatch']} Dispatch */
 /** @typedef {{ core: Core, store: Store, state: State, dispatch: Dispatch }} Parts what every part of the page is given */
-/** @typedef {Report} _Report */

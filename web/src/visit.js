@@ -12,7 +12,16 @@ const INFLUENCE = 'influence:';
 export function blankVisit(date) {
   return {
     schema: 'bandleaf.visit.1',
-    instrument: { name: '', serial: '', place: '', quantity: '', unit: '', range: null, output: { unit: null, resolution: null, nominal: { kind: 'identity' } }, influences: {} },
+    instrument: {
+      name: '',
+      serial: '',
+      place: '',
+      quantity: '',
+      unit: '',
+      range: null,
+      output: { unit: null, resolution: null, nominal: { kind: 'identity' } },
+      influences: {},
+    },
     standards: [],
     occasion: { date, by: '', notes: '' },
     points: [],
@@ -157,12 +166,18 @@ export function withIntake(visit, intake, replace, entering) {
   for (const column of [...intake.columns.filter(isReference), ...intake.columns.filter((other) => !isReference(other))]) {
     const { role, unit } = column;
     if (role === 'reference' && unit && !next.instrument?.unit) next = withInstrument(next, { unit });
-    if (role === 'indication' && unit && unit !== next.instrument?.unit && !next.instrument?.output?.unit) next = withOutput(next, { unit });
+    if (role === 'indication' && unit && unit !== next.instrument?.unit && !next.instrument?.output?.unit)
+      next = withOutput(next, { unit });
     if (role && typeof role === 'object' && !influencesOf(next).includes(role.influence)) next = withInfluence(next, role.influence, unit);
   }
   const blank = newPoint(visit, entering);
   const statesRead = intake.columns.some((column) => column.role === 'state');
-  const read = intake.points.map((point) => ({ ...point, state: statesRead ? point.state : entering, standard: point.standard ?? blank.standard, setting_uncertainty: point.setting_uncertainty ?? blank.setting_uncertainty }));
+  const read = intake.points.map((point) => ({
+    ...point,
+    state: statesRead ? point.state : entering,
+    standard: point.standard ?? blank.standard,
+    setting_uncertainty: point.setting_uncertainty ?? blank.setting_uncertainty,
+  }));
   return { ...next, points: replace ? read : [...pointsOf(visit), ...read] };
 }
 
@@ -188,7 +203,10 @@ export function columnsOf(visit) {
  */
 export function noisePerPoint(visit) {
   const noise = visit.model?.noise;
-  return (noise?.kind === 'known' && noise.standard_deviation === 0) || pointsOf(visit).some((point) => typeof point.indication_uncertainty === 'number');
+  return (
+    (noise?.kind === 'known' && noise.standard_deviation === 0) ||
+    pointsOf(visit).some((point) => typeof point.indication_uncertainty === 'number')
+  );
 }
 
 /**
@@ -198,7 +216,9 @@ export function noisePerPoint(visit) {
  * @returns {string|null}
  */
 export function typedText(point, column) {
-  const kept = column.startsWith(INFLUENCE) ? point.typed?.influences?.[column.slice(INFLUENCE.length)] : point.typed?.[/** @type {'reference'} */ (column)];
+  const kept = column.startsWith(INFLUENCE)
+    ? point.typed?.influences?.[column.slice(INFLUENCE.length)]
+    : point.typed?.[/** @type {'reference'} */ (column)];
   return typeof kept === 'string' ? kept : null;
 }
 
@@ -266,5 +286,10 @@ function isEmpty(point) {
   const { influences, ...others } = point.typed ?? {};
   const texts = [...Object.values(others), ...Object.values(influences ?? {})];
   const values = [point.reference, point.indication, point.indication_uncertainty, ...Object.values(point.influences ?? {})];
-  return texts.every((text) => typeof text !== 'string' || text.trim() === '') && values.every((value) => value === null || value === undefined) && !point.note && !point.set_aside;
+  return (
+    texts.every((text) => typeof text !== 'string' || text.trim() === '') &&
+    values.every((value) => value === null || value === undefined) &&
+    !point.note &&
+    !point.set_aside
+  );
 }

@@ -63,13 +63,22 @@ export function isReserved(problem) {
 export function stateSentence(core, state) {
   const { visit, report, busy, unread } = state;
   if (busy || !report) return { level: 'note', lead: 'Computing.', sentence: 'The table can be used meanwhile.' };
-  if (pointsOf(visit).length === 0) return { level: 'note', lead: 'No points yet.', sentence: 'Type the first reference value and indication, paste cells, or drop a file. The sheet menu has two demos.' };
+  if (pointsOf(visit).length === 0)
+    return {
+      level: 'note',
+      lead: 'No points yet.',
+      sentence: 'Type the first reference value and indication, paste cells, or drop a file. The sheet menu has two demos.',
+    };
   if (unread) return { level: 'warning', lead: `Row ${unread.row}.`, sentence: unread.sentence };
   const error = report.messages.find((message) => message.level === 'error');
   if (error) return { level: 'error', lead: report.fit ? 'Look at this.' : 'No curve yet.', sentence: error.sentence };
   const warning = report.messages.find((message) => message.level === 'warning' && !isReserved(message));
   if (warning) return { level: 'warning', lead: report.fit ? 'Fitted, with a reservation.' : 'No curve yet.', sentence: warning.sentence };
-  return { level: 'good', lead: `Fitted: ${report.fit?.formula ?? ''}.`, sentence: `${fitWords(core, report)} Type a reading to get its value, or save the leaf.` };
+  return {
+    level: 'good',
+    lead: `Fitted: ${report.fit?.formula ?? ''}.`,
+    sentence: `${fitWords(core, report)} Type a reading to get its value, or save the leaf.`,
+  };
 }
 
 /**
@@ -126,7 +135,8 @@ export function valueReservations(value) {
 
 export const CONDITIONS = 'At the time and under the conditions of the calibration; drift not included.';
 
-export const CAUTION = 'Results support, and do not replace, the judgement of a competent person. Safety-critical, medical and legally controlled measurements follow their own regulations and accredited laboratories.';
+export const CAUTION =
+  'Results support, and do not replace, the judgement of a competent person. Safety-critical, medical and legally controlled measurements follow their own regulations and accredited laboratories.';
 
 /** What the outcome of opening means, in a few words. @param {Outcome} outcome */
 export function outcomeWords(outcome) {
