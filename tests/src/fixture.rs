@@ -115,10 +115,9 @@ impl Fixture {
     /// Where the file cannot be read: a test without its figures must not pass.
     pub fn load(name: &str) -> Fixture {
         let path = folder().join(name);
-        let text = std::fs::read_to_string(&path)
-            .unwrap_or_else(|error| panic!("{}: {error}", path.display()));
-        let fixture: Fixture = serde_json::from_str(&text)
-            .unwrap_or_else(|error| panic!("{}: {error}", path.display()));
+        let text = std::fs::read_to_string(&path).unwrap_or_else(|error| panic!("{}: {error}", path.display()));
+        let fixture: Fixture =
+            serde_json::from_str(&text).unwrap_or_else(|error| panic!("{}: {error}", path.display()));
         assert!(!fixture.cases.is_empty(), "{name} has no cases");
         fixture
     }
@@ -130,13 +129,7 @@ impl Fixture {
     pub fn check(&self) {
         let missed: Vec<String> = self.cases.iter().flat_map(Case::missed).collect();
         let asked: usize = self.cases.iter().map(|case| case.expect.len()).sum();
-        assert!(
-            missed.is_empty(),
-            "{}: {} of {asked} figures missed\n{}",
-            self.what,
-            missed.len(),
-            missed.join("\n")
-        );
+        assert!(missed.is_empty(), "{}: {} of {asked} figures missed\n{}", self.what, missed.len(), missed.join("\n"));
     }
 
     /// The cases whose name begins so.
@@ -174,11 +167,7 @@ impl Case {
     /// One line for each expectation that the report does not meet.
     pub fn missed(&self) -> Vec<String> {
         let report = crate::outline(&self.visit());
-        let told = if report["fit"].is_null() {
-            format!(" (no fit: {})", report["messages"])
-        } else {
-            String::new()
-        };
+        let told = if report["fit"].is_null() { format!(" (no fit: {})", report["messages"]) } else { String::new() };
         self.expect
             .iter()
             .filter_map(|expectation| expectation.miss(&report))
@@ -190,22 +179,14 @@ impl Case {
 impl Data {
     fn points(&self) -> Vec<Value> {
         let path = folder().join(&self.csv);
-        let text = std::fs::read_to_string(&path)
-            .unwrap_or_else(|error| panic!("{}: {error}", path.display()));
+        let text = std::fs::read_to_string(&path).unwrap_or_else(|error| panic!("{}: {error}", path.display()));
         let mut lines = text.lines().map(|line| line.split(',').collect::<Vec<_>>());
         let header = lines.next().unwrap_or_default();
         let column = |name: &str| {
-            header
-                .iter()
-                .position(|entry| *entry == name)
-                .unwrap_or_else(|| panic!("{} has no {name}", self.csv))
+            header.iter().position(|entry| *entry == name).unwrap_or_else(|| panic!("{} has no {name}", self.csv))
         };
         let (x, y) = (column(&self.reference), column(&self.indication));
-        let others: Vec<(&String, usize)> = self
-            .influences
-            .iter()
-            .map(|name| (name, column(name)))
-            .collect();
+        let others: Vec<(&String, usize)> = self.influences.iter().map(|name| (name, column(name))).collect();
         lines
             .map(|cells| {
                 let influences: serde_json::Map<String, Value> =
@@ -218,20 +199,14 @@ impl Data {
 
 /// The double nearest to a decimal text.
 fn double(text: &str) -> f64 {
-    text.trim()
-        .parse()
-        .unwrap_or_else(|error| panic!("{text:?} in a fixture is no number: {error}"))
+    text.trim().parse().unwrap_or_else(|error| panic!("{text:?} in a fixture is no number: {error}"))
 }
 
 /// Correct digits of a value against a certified one (log relative error), at most 15.
 pub fn digits(value: f64, certified: &str) -> f64 {
     let certified = double(certified);
     let error = libm::fabs(value - certified) / libm::fabs(certified);
-    if error == 0.0 {
-        15.0
-    } else {
-        (-libm::log10(error)).min(15.0)
-    }
+    if error == 0.0 { 15.0 } else { (-libm::log10(error)).min(15.0) }
 }
 
 impl Expectation {
@@ -244,17 +219,13 @@ impl Expectation {
             return (!same).then(|| format!("{path} is {found:?} instead of {value}"));
         }
         let got = match &self.figure {
-            Figure::Density { x, .. } => found
-                .as_ref()
-                .and_then(|density| interpolate(density, double(x))),
+            Figure::Density { x, .. } => found.as_ref().and_then(|density| interpolate(density, double(x))),
             _ => found.as_ref().and_then(Value::as_f64),
         };
         let Some(got) = got else {
             return Some(format!("{path} is {found:?} instead of a number"));
         };
-        self.figure
-            .miss(got)
-            .map(|how| format!("{path} = {got}: {how}"))
+        self.figure.miss(got).map(|how| format!("{path} = {got}: {how}"))
     }
 }
 
@@ -262,20 +233,15 @@ impl Figure {
     fn miss(&self, got: f64) -> Option<String> {
         match self {
             Figure::Digits { value, limit } => {
-                let (reached, wanted) =
-                    (digits(got, value), (limit - DIGITS_GIVEN).min(MOST_DIGITS));
+                let (reached, wanted) = (digits(got, value), (limit - DIGITS_GIVEN).min(MOST_DIGITS));
                 (reached.is_nan() || reached < wanted)
                     .then(|| format!("{reached:.2} digits of {value}, wanted {wanted:.2}"))
             }
-            Figure::Relative {
-                value,
-                tolerance,
-                magnitude,
-            } => outside(got, value, tolerance * libm::fabs(double(magnitude))),
+            Figure::Relative { value, tolerance, magnitude } => {
+                outside(got, value, tolerance * libm::fabs(double(magnitude)))
+            }
             Figure::Absolute { value, tolerance } => outside(got, value, *tolerance),
-            Figure::Density {
-                value, tolerance, ..
-            } => outside(got, value, tolerance * double(value)),
+            Figure::Density { value, tolerance, .. } => outside(got, value, tolerance * double(value)),
             Figure::Is { .. } => None,
         }
     }
@@ -297,25 +263,14 @@ fn same(found: &Value, expected: &Value) -> bool {
 
 /// Density at a place by interpolating its logarithm through the four nearest places (Lagrange).
 fn interpolate(density: &Value, x: f64) -> Option<f64> {
-    let list = |name: &str| -> Option<Vec<f64>> {
-        density
-            .get(name)?
-            .as_array()?
-            .iter()
-            .map(Value::as_f64)
-            .collect()
-    };
+    let list = |name: &str| -> Option<Vec<f64>> { density.get(name)?.as_array()?.iter().map(Value::as_f64).collect() };
     let (places, heights) = (list("x")?, list("density")?);
     let after = places.iter().position(|place| *place >= x)?;
     let first = after.saturating_sub(2).min(places.len().checked_sub(4)?);
     let near = first..first + 4;
     let mut logarithm = 0.0;
     for i in near.clone() {
-        let weight: f64 = near
-            .clone()
-            .filter(|j| *j != i)
-            .map(|j| (x - places[j]) / (places[i] - places[j]))
-            .product();
+        let weight: f64 = near.clone().filter(|j| *j != i).map(|j| (x - places[j]) / (places[i] - places[j])).product();
         logarithm += weight * libm::log(heights[i]);
     }
     Some(libm::exp(logarithm))

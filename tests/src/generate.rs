@@ -67,11 +67,7 @@ impl Plan {
             8 => "correction_from_indication",
             _ => "indication_from_reference",
         };
-        let letter = if orientation == "indication_from_reference" {
-            "x"
-        } else {
-            "y"
-        };
+        let letter = if orientation == "indication_from_reference" { "x" } else { "y" };
         let (terms, columns) = shape(index, letter);
         let low = rounded(random.between(0.5, 5.0));
         let high = rounded(low + random.between(20.0, 120.0));
@@ -83,27 +79,13 @@ impl Plan {
             _ => (json!({"kind": "linear", "range": [10, 0]}), 10.0, 0.0),
         };
         let noise = rounded((out_high - out_low).abs() * random.between(0.0005, 0.01)).max(0.001);
-        Plan {
-            terms,
-            columns,
-            orientation,
-            nominal,
-            low,
-            high,
-            out_low,
-            out_high,
-            noise,
-        }
+        Plan { terms, columns, orientation, nominal, low, high, out_low, out_high, noise }
     }
 
     /// Indication of an instrument that is a little off its nominal characteristic, without noise.
     fn shown(&self, x: f64) -> f64 {
         let share = (x - self.low) / (self.high - self.low);
-        let share = if self.nominal["kind"] == "square_root" {
-            libm::sqrt(share.max(0.0))
-        } else {
-            share
-        };
+        let share = if self.nominal["kind"] == "square_root" { libm::sqrt(share.max(0.0)) } else { share };
         let bent = share + 0.004 * libm::sin(3.0 * share) + 0.002;
         self.out_low + (self.out_high - self.out_low) * bent
     }
@@ -175,8 +157,7 @@ impl Plan {
             point["repeats"] = json!(2 + random.below(9));
         }
         if per_point {
-            point["indication_uncertainty"] =
-                json!(rounded(self.noise * random.between(0.5, 2.0)).max(0.001));
+            point["indication_uncertainty"] = json!(rounded(self.noise * random.between(0.5, 2.0)).max(0.001));
         }
         if random.chance(0.2) {
             point["approach"] = json!(random.one_of(&["up", "down"]));
@@ -203,7 +184,7 @@ impl Plan {
             "terms": self.terms,
             "noise": noise,
             "known_before": self.known_before(index, random),
-            "suspects": if index % 10 == 0 { json!({"enabled": true, "prior_probability": 0.02}) } else { Value::Null },
+            "suspects": if index.is_multiple_of(10) { json!({"enabled": true, "prior_probability": 0.02}) } else { Value::Null },
             "candidates": if index % 10 == 1 { json!([["1", "x"], ["1", "x", "x^2"]]) } else { json!([]) },
         })
     }
@@ -212,17 +193,7 @@ impl Plan {
         let p = self.columns;
         let means: Vec<f64> = (0..p).map(|_| rounded(random.normal())).collect();
         let spread: Vec<Vec<f64>> = (0..p)
-            .map(|i| {
-                (0..p)
-                    .map(|j| {
-                        if i == j {
-                            4.0
-                        } else {
-                            0.5 / (1.0 + (i as f64 - j as f64).abs())
-                        }
-                    })
-                    .collect()
-            })
+            .map(|i| (0..p).map(|j| if i == j { 4.0 } else { 0.5 / (1.0 + (i as f64 - j as f64).abs()) }).collect())
             .collect();
         match (index % 4, index % 13) {
             (2, 0..=2) => json!([{"kind": "coefficients", "mean": means, "covariance": spread}]),
@@ -257,10 +228,7 @@ impl Plan {
         at.push(json!({"x": place(random), "influences": {"temperature": 15}}));
         let shown = |x: f64| rounded(self.shown(x));
         let middle = shown(place(random));
-        let mut readings = vec![
-            json!([middle]),
-            json!([middle, middle + 0.002, middle - 0.001]),
-        ];
+        let mut readings = vec![json!([middle]), json!([middle, middle + 0.002, middle - 0.001])];
         match index % 6 {
             0 => readings.push(json!({"indications": [middle], "resolution": 0.01})),
             1 => readings.push(json!({"indications": [middle], "influences": {"temperature": 25}})),
@@ -268,9 +236,7 @@ impl Plan {
                 "indications": [middle],
                 "known": {"mean": place(random), "standard_uncertainty": 5},
             })),
-            3 => readings.push(json!(
-                [self.out_high + 3.0 * (self.out_high - self.out_low)]
-            )),
+            3 => readings.push(json!([self.out_high + 3.0 * (self.out_high - self.out_low)])),
             4 => readings.push(json!(shown(self.high))),
             _ => readings.push(json!([])),
         }
@@ -297,16 +263,10 @@ fn shape(index: u64, letter: &str) -> (Value, usize) {
         10 => list(&["1", "@", "@*temperature"]),
         11 => list(&["@"]),
         12 => list(&["1", "@-20", "(@-20)^2"]),
-        13 => (
-            json!([{"kind": "polynomial", "degree": 1}, format!("{letter}^3")]),
-            3,
-        ),
-        14 => (
-            json!({"kind": "polynomial", "degree": 6 + index % 7}),
-            7 + index as usize % 7,
-        ),
+        13 => (json!([{"kind": "polynomial", "degree": 1}, format!("{letter}^3")]), 3),
+        14 => (json!({"kind": "polynomial", "degree": 6 + index % 7}), 7 + index as usize % 7),
         15 => list(&["1", "@", "cos(@/9)", "sqrt(@)*temperature"]),
-        _ if index % 2 == 0 => (json!({"kind": "spline", "knots": [5, 20, 40]}), 4),
+        _ if index.is_multiple_of(2) => (json!({"kind": "spline", "knots": [5, 20, 40]}), 4),
         _ => (json!({"kind": "broken_line", "knots": [5, 20, 40]}), 4),
     }
 }
@@ -318,49 +278,29 @@ fn decorate(visit: &mut Value, index: u64) {
     };
     match index % 12 {
         0 => {
-            fields.insert(
-                "tolerance".into(),
-                json!({"combine": "sum", "constant": 4, "of_value": 0.002}),
-            );
+            fields.insert("tolerance".into(), json!({"combine": "sum", "constant": 4, "of_value": 0.002}));
         }
         1 => {
-            let errors =
-                json!([{"kind": "offset", "standard_uncertainty": 0.05, "source": "certificate"}]);
-            fields.insert(
-                "standards".into(),
-                json!([{"id": "S1", "name": "tape", "errors": errors}]),
-            );
+            let errors = json!([{"kind": "offset", "standard_uncertainty": 0.05, "source": "certificate"}]);
+            fields.insert("standards".into(), json!([{"id": "S1", "name": "tape", "errors": errors}]));
             each_point(fields, "standard", &json!("S1"));
         }
         2 => each_point(fields, "setting_uncertainty", &json!(0.02)),
         3 => each_point(fields, "reference_uncertainty", &json!(0.01)),
         4 => {
-            fields.insert(
-                "plan".into(),
-                json!({"admissible": [1, 10, 20], "evaluate": [1, 20, 5]}),
-            );
+            fields.insert("plan".into(), json!({"admissible": [1, 10, 20], "evaluate": [1, 20, 5]}));
             fields.insert("target_expanded_uncertainty".into(), json!(0.2));
         }
         5 => {
-            let installation =
-                json!([{"source": "installation", "limits": 1, "distribution": "rectangular"}]);
+            let installation = json!([{"source": "installation", "limits": 1, "distribution": "rectangular"}]);
             fields.insert("in_use".into(), json!({"contributions": installation}));
         }
         6 => {
-            fields.insert(
-                "earlier".into(),
-                json!([{"schema": "bandleaf.visit.1", "points": []}]),
-            );
-            fields.insert(
-                "history".into(),
-                json!([{"at": "2026-05-04T09:12:00Z", "change": "typed"}]),
-            );
+            fields.insert("earlier".into(), json!([{"schema": "bandleaf.visit.1", "points": []}]));
+            fields.insert("history".into(), json!([{"at": "2026-05-04T09:12:00Z", "change": "typed"}]));
         }
         7 => {
-            fields.insert(
-                "unheard_of".into(),
-                json!({"kept": ["as it is", 1e-7, -0.0, "</script>", "\u{2028}"]}),
-            );
+            fields.insert("unheard_of".into(), json!({"kept": ["as it is", 1e-7, -0.0, "</script>", "\u{2028}"]}));
         }
         _ => {}
     }

@@ -42,18 +42,8 @@ pub fn path() -> PathBuf {
 
 /// Fixture cases of which golden values are kept, by file.
 const CASES: [(&str, &[&str]); 4] = [
-    (
-        "certified.json",
-        &["norris", "pontius", "filip", "wampler4"],
-    ),
-    (
-        "published.json",
-        &[
-            "gum_h3_as_published",
-            "iso28037_unequal_one_sigma",
-            "hoff_gprior_conjugate",
-        ],
-    ),
+    ("certified.json", &["norris", "pontius", "filip", "wampler4"]),
+    ("published.json", &["gum_h3_as_published", "iso28037_unequal_one_sigma", "hoff_gprior_conjugate"]),
     (
         "oracle.json",
         &[
@@ -64,10 +54,7 @@ const CASES: [(&str, &[&str]); 4] = [
             "F-two-modes",
         ],
     ),
-    (
-        "classical.json",
-        &["bird extinction times on nesting pairs, size and status"],
-    ),
+    ("classical.json", &["bird extinction times on nesting pairs, size and status"]),
 ];
 
 /// Numbers of the generated visits of which golden values are kept.
@@ -79,21 +66,11 @@ pub fn visits() -> Vec<(String, Value)> {
         let cases = Fixture::load(file).cases;
         names.iter().map(move |name| {
             let case = cases.iter().find(|case| case.name == *name);
-            (
-                name.to_string(),
-                case.unwrap_or_else(|| panic!("{file} has no case {name}"))
-                    .document(),
-            )
+            (name.to_string(), case.unwrap_or_else(|| panic!("{file} has no case {name}")).document())
         })
     });
-    let generated = GENERATED
-        .iter()
-        .map(|index| (format!("generated {index}"), generate::visit(*index)));
-    named
-        .collect::<Vec<_>>()
-        .into_iter()
-        .chain(generated)
-        .collect()
+    let generated = GENERATED.iter().map(|index| (format!("generated {index}"), generate::visit(*index)));
+    named.collect::<Vec<_>>().into_iter().chain(generated).collect()
 }
 
 /// The numbers of a visit's report that are kept.
@@ -101,11 +78,7 @@ pub fn numbers(visit: &Value) -> Vec<Number> {
     report_path::numbers(&outline(&crate::visit(visit.clone())))
         .into_iter()
         .filter(|(path, _)| is_kept(path))
-        .map(|(path, value)| Number {
-            path,
-            decimal: format!("{value:?}"),
-            bits: bits(value),
-        })
+        .map(|(path, value)| Number { path, decimal: format!("{value:?}"), bits: bits(value) })
         .collect()
 }
 
@@ -116,9 +89,7 @@ pub fn bits(value: f64) -> String {
 
 /// Results, not words; not the drawn density; not the hundredth point.
 fn is_kept(path: &str) -> bool {
-    let point = path
-        .split_once("points[")
-        .and_then(|(_, rest)| rest.split(']').next()?.parse::<usize>().ok());
+    let point = path.split_once("points[").and_then(|(_, rest)| rest.split(']').next()?.parse::<usize>().ok());
     !path.contains(".density.")
         && !path.contains("messages[")
         && !path.contains(".args.")

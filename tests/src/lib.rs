@@ -17,8 +17,7 @@ use serde_json::Value;
 /// # Panics
 /// Where the JSON is no visit: an error of the test, not of the program.
 pub fn visit(json: Value) -> Visit {
-    serde_json::from_value(json)
-        .unwrap_or_else(|error| panic!("the test's visit cannot be read: {error}"))
+    serde_json::from_value(json).unwrap_or_else(|error| panic!("the test's visit cannot be read: {error}"))
 }
 
 /// The report of a visit without the drawn curve, as JSON.
@@ -26,6 +25,5 @@ pub fn visit(json: Value) -> Visit {
 /// # Panics
 /// Where the report cannot be written as JSON.
 pub fn outline(visit: &Visit) -> Value {
-    serde_json::to_value(bandleaf_core::appraise(visit).outline())
-        .unwrap_or_else(|error| panic!("no JSON: {error}"))
+    serde_json::to_value(bandleaf_core::appraise(visit).outline()).unwrap_or_else(|error| panic!("no JSON: {error}"))
 }

@@ -74,14 +74,7 @@ mod tests {
     fn bits_are_those_of_the_reference_implementation() {
         let mut random = SplitMix64::new(1_234_567);
         let first: Vec<u64> = (0..3).map(|_| random.bits()).collect();
-        assert_eq!(
-            first,
-            [
-                6_457_827_717_110_365_317,
-                3_203_168_211_198_807_973,
-                9_817_491_932_198_370_423
-            ]
-        );
+        assert_eq!(first, [6_457_827_717_110_365_317, 3_203_168_211_198_807_973, 9_817_491_932_198_370_423]);
     }
 
     #[test]
@@ -91,9 +84,6 @@ mod tests {
         let mean = draws.iter().sum::<f64>() / 1e5;
         let variance = draws.iter().map(|z| z * z).sum::<f64>() / 1e5;
         assert!(libm::fabs(mean) < 4.0 / libm::sqrt(1e5), "{mean}");
-        assert!(
-            libm::fabs(variance - 1.0) < 4.0 * libm::sqrt(2.0 / 1e5),
-            "{variance}"
-        );
+        assert!(libm::fabs(variance - 1.0) < 4.0 * libm::sqrt(2.0 / 1e5), "{variance}");
     }
 }

@@ -23,10 +23,7 @@ pub fn find(report: &Value, path: &str) -> Option<Value> {
 /// An entry of a list by its index, or by `key=text`.
 fn select<'a>(list: &'a Value, selector: &str) -> Option<&'a Value> {
     match selector.split_once('=') {
-        Some((key, text)) => list
-            .as_array()?
-            .iter()
-            .find(|entry| entry.get(key).and_then(Value::as_str) == Some(text)),
+        Some((key, text)) => list.as_array()?.iter().find(|entry| entry.get(key).and_then(Value::as_str) == Some(text)),
         None => list.get(selector.parse::<usize>().ok()?),
     }
 }
@@ -86,9 +83,6 @@ mod tests {
         let report = json!({"a": [1.0, {"b": 2.0}], "checks": [{"check": "x", "p": 0.25}, {"check": "y", "p": 0.5}]});
         let all = numbers(&report);
         assert_eq!(all.len(), 4);
-        assert!(
-            all.iter()
-                .all(|(path, value)| number(&report, path) == Some(*value))
-        );
+        assert!(all.iter().all(|(path, value)| number(&report, path) == Some(*value)));
     }
 }

@@ -10,10 +10,8 @@ fn main() {
     println!("|---|---|---|---|---|---|---|");
     for case in &Fixture::load("certified.json").cases {
         let report = outline(&case.visit());
-        let columns: Vec<String> = ["estimate", "scale", "noise.estimate"]
-            .iter()
-            .map(|field| worst(case, &report, field))
-            .collect();
+        let columns: Vec<String> =
+            ["estimate", "scale", "noise.estimate"].iter().map(|field| worst(case, &report, field)).collect();
         println!("| {} | {} |", case.name, columns.join(" | "));
     }
 }

@@ -6,11 +6,7 @@ use std::process::ExitCode;
 fn main() -> ExitCode {
     let all: Vec<Golden> = golden::visits()
         .into_iter()
-        .map(|(name, visit)| Golden {
-            name,
-            numbers: golden::numbers(&visit),
-            visit,
-        })
+        .map(|(name, visit)| Golden { name, numbers: golden::numbers(&visit), visit })
         .collect();
     let written = serde_json::to_string_pretty(&all)
         .map_err(std::io::Error::other)
@@ -18,11 +14,7 @@ fn main() -> ExitCode {
     match written {
         Ok(()) => {
             let numbers: usize = all.iter().map(|golden| golden.numbers.len()).sum();
-            println!(
-                "{} visits, {numbers} numbers: {}",
-                all.len(),
-                golden::path().display()
-            );
+            println!("{} visits, {numbers} numbers: {}", all.len(), golden::path().display());
             ExitCode::SUCCESS
         }
         Err(error) => {
