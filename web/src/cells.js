@@ -88,7 +88,7 @@ export function firstUnread(core, visit) {
     if (!trouble) continue;
     const sentence = trouble.alternatives
       ? `“${trouble.text}” can be read in two ways: choose one in the row.`
-      : `“${trouble.text}” in ${trouble.label}: ${trouble.sentence}`;
+      : `${trouble.sentence} Correct the ${trouble.label}, or clear the cell.`;
     return { row: index + 1, sentence };
   }
   return null;

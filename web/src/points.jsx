@@ -7,7 +7,7 @@ import { readPieces, rowTrouble, shownText, toCell } from './cells.js';
 import { chooseAndOpen, fillDown } from './commands.js';
 import { TwoWays } from './fields.jsx';
 import { cellChange, columnsOf, pointsOf, withPoint } from './visit.js';
-import { stateWords } from './words.js';
+import { isReserved, stateWords } from './words.js';
 
 const ROWS_SHOWN = 200;
 const IDLE = 800;
@@ -104,7 +104,7 @@ export function Points({ core, store, state, dispatch }) {
 function Row({ core, store, dispatch, index, point, columns, known, hasError, bothStates }) {
   return useMemo(() => {
     const trouble = point ? rowTrouble(core, columns, point) : null;
-    const messages = known?.messages ?? [];
+    const messages = trouble ? [] : (known?.messages ?? []);
     const aside = point?.set_aside ?? null;
     const marked = trouble !== null || messages.length > 0;
     const width = columns.length + 3 + Number(hasError) + Number(bothStates);
@@ -153,11 +153,7 @@ function Row({ core, store, dispatch, index, point, columns, known, hasError, bo
                   onChoose={(values) => commit(store, index, trouble.column, trouble.text, values)}
                 />
               )}
-              {trouble?.sentence && (
-                <span>
-                  “{trouble.text}”: {trouble.sentence}{' '}
-                </span>
-              )}
+              {trouble?.sentence && <span>{trouble.sentence} </span>}
               {messages.map((message) => (
                 <span key={message.code + message.sentence}>{message.sentence} </span>
               ))}
@@ -267,7 +263,7 @@ function grouped(rows, messages) {
   for (const row of rows) at(row.point).rows.push(row);
   for (const message of messages) {
     const match = /^points\[(\d+)\]/.exec(message.place);
-    if (match) at(Number(match[1])).messages.push(message);
+    if (match && !isReserved(message)) at(Number(match[1])).messages.push(message);
   }
   return known;
 }
