@@ -130,14 +130,16 @@ fn records(text: &str, separator: u8, most: usize, quoting: bool) -> Result<Rows
 /// Rows of texts whose cells are separated by spaces, or that have one cell a row.
 fn lines(text: &str, delimiter: Delimiter, most: usize) -> Result<Rows, Problem> {
     let mut found = Collector::new(most);
+    let enough = MOST_CELLS_A_ROW + 1;
     for (index, line) in text.split('\n').enumerate() {
         let cells: StringRecord = match delimiter {
-            Delimiter::Space => line.split([' ', '\t']).filter(|cell| !cell.is_empty()).collect(),
+            Delimiter::Space => line.split([' ', '\t']).filter(|cell| !cell.is_empty()).take(enough).collect(),
             Delimiter::WideSpace => line
                 .split("  ")
                 .flat_map(|part| part.split('\t'))
                 .map(trimmed)
                 .filter(|cell| !cell.is_empty())
+                .take(enough)
                 .collect(),
             _ => std::iter::once(line).collect(),
         };
@@ -164,7 +166,12 @@ impl Collector {
 
     /// Keeps a row that is not empty; false where there is no room for it.
     fn add(&mut self, number: usize, cells: StringRecord) -> Result<bool, Problem> {
-        self.cells += cells.len();
+        let count = cells.len();
+        let row = Row::new(number, cells);
+        if row.len() == 0 {
+            return Ok(true);
+        }
+        self.cells += count;
         if self.cells > MOST_CELLS {
             return Err(Problem::error(
                 "too_many_cells",
@@ -176,10 +183,6 @@ impl Collector {
             .with("row", number)
             .with("most", MOST_CELLS));
         }
-        let row = Row::new(number, cells);
-        if row.len() == 0 {
-            return Ok(true);
-        }
         if self.rows.rows.len() == self.most {
             self.rows.cut = true;
             return Ok(false);
@@ -189,8 +192,14 @@ impl Collector {
     }
 }
 
+/// Counts separators outside of quotation marks, so that a long note in a cell does no harm.
 fn is_too_wide(line: &str, separator: u8) -> bool {
-    line.len() > MOST_CELLS_A_ROW && line.bytes().filter(|byte| *byte == separator).count() > MOST_CELLS_A_ROW
+    let mut quoted = false;
+    let separates = |byte: &u8| {
+        quoted ^= *byte == b'"';
+        !quoted && *byte == separator
+    };
+    line.len() > MOST_CELLS_A_ROW && line.as_bytes().iter().copied().filter(separates).count() > MOST_CELLS_A_ROW
 }
 
 fn too_wide(row: usize) -> Problem {
@@ -251,6 +260,8 @@ mod tests {
     fn too_many_cells_are_refused_before_they_fill_the_memory() {
         let wide = ",".repeat(5000);
         assert_eq!(rows(&wide, Delimiter::Comma, 10).expect_err("wide").code, "too_many_columns");
+        let note = format!("1,2,\"{}\"\n", wide);
+        assert_eq!(rows(&note, Delimiter::Comma, 10).expect("a long note").rows.len(), 1);
         let spaced = "1 ".repeat(5000);
         assert_eq!(rows(&spaced, Delimiter::Space, 10).expect_err("wide").code, "too_many_columns");
     }

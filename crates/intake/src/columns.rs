@@ -58,6 +58,8 @@ pub(crate) struct Tally {
     /// A cell that can be read both ways, with both readings.
     pub example: Option<Example>,
     unit: Option<String>,
+    /// The thousands separator with a decimal point, and with a decimal comma.
+    thousands: (Option<char>, Option<char>),
 }
 
 /// A cell that can be read both ways.
@@ -114,6 +116,9 @@ impl Tally {
                 }
             }
         }
+        let separator = |decimal| written.reading(decimal).and_then(|reading| reading.thousands);
+        self.thousands.0 = self.thousands.0.or_else(|| separator(Decimal::Point));
+        self.thousands.1 = self.thousands.1.or_else(|| separator(Decimal::Comma));
         if self.unit.is_none() {
             self.unit = written.unit.map(str::to_owned);
         }
@@ -144,30 +149,28 @@ pub(crate) struct Reader {
 }
 
 impl Reader {
-    pub(crate) fn new(index: usize, heading: &Heading, tally: &Tally, mark: Mark, rows: &[Row]) -> Reader {
+    pub(crate) fn new(index: usize, heading: &Heading, tally: &Tally, mark: Mark) -> Reader {
         let decimal = match mark {
             Mark::Known { decimal, .. } => Some(decimal),
             Mark::PointByDelimiter => Some(Decimal::Point),
             Mark::None | Mark::Open => None,
         };
-        let mut column = Column {
+        let thousands = match (mark, decimal) {
+            (Mark::Open, _) => None,
+            (_, Some(Decimal::Comma)) => tally.thousands.1,
+            _ => tally.thousands.0,
+        };
+        let column = Column {
             index,
             name: heading.name.clone(),
             unit: heading.unit.clone().or_else(|| tally.unit.clone()),
             decimal,
-            thousands: None,
+            thousands,
             role: None,
             state: None,
             approach: None,
             numbers: tally.numbers,
         };
-        if mark != Mark::Open {
-            let read = decimal.unwrap_or(Decimal::Point);
-            column.thousands = rows.iter().find_map(|row| match scan(row.cell(index), heading.unit.as_deref()) {
-                Scan::Number(written) => written.reading(read).and_then(|reading| reading.thousands),
-                _ => None,
-            });
-        }
         Reader { column, mark, heading_unit: heading.unit.clone() }
     }
 

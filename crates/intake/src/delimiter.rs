@@ -91,15 +91,18 @@ pub(crate) fn choose(text: &str) -> Choice {
     let trials: Vec<Trial> = CANDIDATES.into_iter().filter_map(|candidate| Trial::of(sample, candidate)).collect();
     let first_best = trials.iter().reduce(|best, trial| if trial.score > best.score { trial } else { best });
     let Some(best) = first_best else {
-        return Choice { delimiter: Delimiter::None, rival: None };
+        // What is too wide for every trial is told apart by the one that says so.
+        let too_wide = CANDIDATES.into_iter().find(|candidate| rows(sample, *candidate, SAMPLE_ROWS).is_err());
+        return Choice { delimiter: too_wide.unwrap_or(Delimiter::None), rival: None };
     };
     // "150,5 151,5": divided at commas there would be a "5 151" in every row.
     let best = trials.iter().find(|trial| trial.score == best.score && trial.has_decimal_commas()).unwrap_or(best);
     Choice { delimiter: best.delimiter, rival: rival(best, &trials, &lines) }
 }
 
-/// Whole lines of the beginning of the text.
+/// Whole lines of the beginning of the text, empty ones in front left out.
 fn beginning(text: &str) -> &str {
+    let text = text.trim_start_matches('\n');
     if text.len() <= SAMPLE_BYTES {
         return text;
     }

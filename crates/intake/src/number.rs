@@ -11,6 +11,9 @@ use crate::refusal::{self, Refusal};
 use crate::unit::{is_unit, same_unit};
 use serde::{Deserialize, Serialize};
 
+/// Longest text that is read as a number, in bytes: every f64 written out in full is shorter.
+const LONGEST_NUMBER: usize = 1_200;
+
 /// The decimal mark.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
 #[serde(rename_all = "snake_case")]
@@ -116,6 +119,9 @@ pub(crate) fn scan<'a>(text: &'a str, unit: Option<&str>) -> Scan<'a> {
     if text.is_empty() {
         return Scan::Empty;
     }
+    if text.len() > LONGEST_NUMBER {
+        return Scan::Refused(Refusal::TooLong);
+    }
     if let Some(refusal) = refusal::of_marker(text) {
         return Scan::Refused(refusal);
     }
@@ -183,14 +189,12 @@ fn parts<'a>(text: &'a str, unit: Option<&str>) -> Result<Parts<'a>, Refusal> {
 impl<'a> Parts<'a> {
     fn read(&self, text: &str) -> Scan<'a> {
         let point = self.with(Decimal::Point);
-        let comma = self.with(Decimal::Comma);
+        let marked = self.body.contains(['.', ',']);
+        let comma = if marked { self.with(Decimal::Comma) } else { point.clone() };
         let unwrap = |reading: Option<Result<Reading, Refusal>>| reading.transpose();
         match (unwrap(point), unwrap(comma)) {
             (Ok(None), Ok(None)) => Scan::Refused(refusal::of_text(text)),
-            (Ok(point), Ok(comma)) => {
-                let marked = self.body.contains(['.', ',']);
-                Scan::Number(Written { point, comma, marked, unit: self.unit })
-            }
+            (Ok(point), Ok(comma)) => Scan::Number(Written { point, comma, marked, unit: self.unit }),
             (Err(refusal), _) | (_, Err(refusal)) => Scan::Refused(refusal),
         }
     }

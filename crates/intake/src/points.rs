@@ -5,7 +5,7 @@ use crate::columns::Reader;
 use crate::delimiter::Delimiter;
 use crate::number::scan;
 use crate::role::{Approach, Role, State, approach_of, state_of};
-use crate::wording::{capital, quoted};
+use crate::wording::{capital, quoted, shortened};
 use bandleaf_core::problem::Problem;
 use serde::Serialize;
 use std::collections::BTreeMap;
@@ -279,7 +279,7 @@ impl<'a> Work<'a> {
             Problem::error(code, place, sentence)
                 .with("row", number)
                 .with("column", column.index + 1)
-                .with("text", text)
+                .with("text", shortened(text))
         });
     }
 

@@ -27,6 +27,8 @@ pub(crate) enum Refusal {
     TooLarge,
     /// Nearer to zero than any number that can be computed with, but not zero.
     TooSmall,
+    /// More digits than any number needs.
+    TooLong,
     /// Words.
     Text,
     /// The cell's unit is not the column's.
@@ -65,6 +67,7 @@ impl Refusal {
             Refusal::Extra(_) => "cell_extra_text",
             Refusal::TooLarge => "cell_too_large",
             Refusal::TooSmall => "cell_too_small",
+            Refusal::TooLong => "cell_too_long",
             Refusal::Text => "cell_text",
             Refusal::OtherUnit { .. } => "cell_other_unit",
             Refusal::Ambiguous { .. } => "cell_ambiguous",
@@ -116,6 +119,7 @@ impl Refusal {
                     "{cell} is nearer to zero than any number that can be computed with (5e-324); type 0 if it is zero."
                 )
             }
+            Refusal::TooLong => format!("{cell} is too long to be a number."),
             Refusal::Text => format!("{cell} is text, not a number."),
             Refusal::OtherUnit { cell: unit, column } => {
                 format!(

@@ -98,7 +98,7 @@ fn fill(intake: &mut Intake, table: &Layout, delimiter: Delimiter, options: &Opt
         .enumerate()
         .map(|(index, (heading, tally))| {
             let mark = tally.mark(told_decimal(index, &headings, options), delimiter);
-            Reader::new(index, heading, tally, mark, &table.data)
+            Reader::new(index, heading, tally, mark)
         })
         .collect();
     if intake.questions.is_empty() && !table.data.is_empty() {

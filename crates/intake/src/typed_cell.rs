@@ -3,7 +3,7 @@
 use crate::columns::ambiguous;
 use crate::number::{Decimal, Scan, Tells, scan};
 use crate::refusal::Refusal;
-use crate::wording::capital;
+use crate::wording::{capital, shortened};
 use bandleaf_core::problem::Problem;
 use serde::Serialize;
 
@@ -55,7 +55,7 @@ pub fn parse_cell_with(text: &str, decimal: Option<Decimal>) -> Cell {
 }
 
 fn problem(refusal: &Refusal, text: &str) -> Problem {
-    Problem::error(refusal.code(), "", capital(&refusal.reason(text))).with("text", text)
+    Problem::error(refusal.code(), "", capital(&refusal.reason(text))).with("text", shortened(text))
 }
 
 #[cfg(test)]

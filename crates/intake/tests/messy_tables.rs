@@ -396,6 +396,23 @@ fn nothing_to_read() {
 }
 
 #[test]
+fn one_huge_cell_or_row_does_no_harm() {
+    let note = "bubbles, again; ".repeat(70_000);
+    let intake = read(&format!("reference;indication;note\n150;151;\"{note}\"\n400;402;\n"));
+    assert_eq!(
+        (pairs(&intake), intake.points[0].note.len()),
+        (vec![single(150.0, 151.0), single(400.0, 402.0)], note.trim().len())
+    );
+    let digits = read(&format!("reference;indication\n150;{}\n", "9".repeat(1_000_000)));
+    assert_eq!(codes(&digits), ["cell_too_long"]);
+    for separator in [" ", ",", ";", "\t"] {
+        assert_eq!(codes(&read(&format!("1{separator}").repeat(100_000))), ["too_many_columns"], "{separator:?}");
+    }
+    let blank = read(&format!("{}150,151.5", "\n".repeat(5_000_000)));
+    assert_eq!(pairs(&blank), [single(150.0, 151.5)]);
+}
+
+#[test]
 fn the_shape_of_the_answer() {
     let json = serde_json::to_value(read("reference / mm;indication / mm\n150;151,0\n")).expect("JSON");
     assert_eq!(
