@@ -43,15 +43,32 @@ export async function startCore(texts) {
       true,
     );
   try {
-    await init({ module_or_path: await inflate(decodeBase64(texts.wasm)) });
+    return await startWith(await unpack(texts.wasm));
   } catch (cause) {
     throw new StartError(
       `The calculation could not be started (${cause instanceof Error ? cause.message : cause}). Open the file in another browser, or ask for the original file.`,
       false,
     );
   }
+}
+
+/**
+ * The core from its bytes.
+ * @param {Uint8Array} bytes
+ * @returns {Promise<Core>}
+ */
+export async function startWith(bytes) {
+  await init({ module_or_path: bytes });
   const { initSync: _, ...functions } = /** @type {any} */ (wasm);
   return Object.freeze({ ...functions });
+}
+
+/**
+ * The bytes of the core from the text that carries them: base64 of raw deflate.
+ * @param {string} text
+ */
+export function unpack(text) {
+  return inflate(decodeBase64(text));
 }
 
 /**

@@ -41,7 +41,7 @@ export function IntakePanel({ core, store, state, intake, onClose }) {
           onChoose={(at) => setOptions(question.choices[Number(at)].option)}
         />
       ))}
-      {read.problems.length > 0 && (
+      {read.questions.length === 0 && read.problems.length > 0 && (
         <section aria-label="Not read">
           <h3>Not read</h3>
           <ul class="plain">
@@ -52,12 +52,15 @@ export function IntakePanel({ core, store, state, intake, onClose }) {
           {read.problems.length > 200 && <p class="hint">and {read.problems.length - 200} more.</p>}
         </section>
       )}
+      {read.questions.length > 0 && <p class="hint">Answer what is asked above; nothing is added before.</p>}
       <div class="buttons">
-        <button type="button" class="primary" disabled={count === 0} onClick={() => add(false)}>
-          {held > 0 ? `Add ${count} behind the ${held} rows` : `Add ${count} ${count === 1 ? 'row' : 'rows'}`}
-        </button>
-        {held > 0 && (
-          <button type="button" disabled={count === 0} onClick={() => add(true)}>
+        {count > 0 && (
+          <button type="button" class="primary" onClick={() => add(false)}>
+            {held > 0 ? `Add ${count} behind the ${held} rows` : `Add ${count} ${count === 1 ? 'row' : 'rows'}`}
+          </button>
+        )}
+        {count > 0 && held > 0 && (
+          <button type="button" onClick={() => add(true)}>
             Put {count} in their place
           </button>
         )}

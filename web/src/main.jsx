@@ -7,6 +7,7 @@ import { StartError, startCore } from './bindings.js';
 import { today } from './commands.js';
 import { findDrafts, keepDraft, keptMode } from './drafts.js';
 import { saveFile } from './files.js';
+import { createHelper, serve } from './helper.js';
 import { ownTexts } from './own.js';
 import { Sheet } from './sheet.jsx';
 import { createStore, refusal } from './store.js';
@@ -15,7 +16,8 @@ import { isSound } from './words.js';
 
 const DRAFT_AFTER = 400;
 
-start();
+if (typeof document === 'undefined') serve();
+else start();
 
 async function start() {
   const root = document.documentElement;
@@ -26,7 +28,7 @@ async function start() {
   try {
     const core = await startCore(texts);
     /** @type {any} */ (globalThis).bandleaf = core;
-    const store = createStore(core, opening(core, texts));
+    const store = createStore(core, createHelper(texts), opening(core, texts));
     const shownFirst = store.state();
     render(<Sheet core={core} store={store} />, place);
     root.dataset.state = shownFirst.stage === 'altered' ? 'altered' : 'ready';

@@ -75,9 +75,10 @@ export function paint(context, scene, frame, inks) {
   context.clip();
   bands(context, scene, frame, inks);
   zeroLine(context, scene, frame, inks);
-  if (scene.plumb) plumb(context, scene, scene.plumb, frame, inks);
+  if (scene.plumb) plumb(context, scene.plumb, frame, inks);
   lines(context, scene, frame, inks);
   marks(context, scene, frame, inks);
+  if (scene.plumb) label(context, scene, scene.plumb, frame, inks);
   context.restore();
 }
 
@@ -289,12 +290,11 @@ function outline(context, { glyph }, x, y) {
 /**
  * The plumb line from the curve to the axis of the values, where it casts its density as a shadow.
  * @param {CanvasRenderingContext2D} context
- * @param {Scene} scene
  * @param {Plumb} line
  * @param {Frame} frame
  * @param {Inks} inks
  */
-function plumb(context, scene, line, frame, inks) {
+function plumb(context, line, frame, inks) {
   const bottom = frame.height - MARGIN.bottom;
   const [x, y] = pixel(frame, line.x, line.y);
   if (line.density) shadow(context, line, frame, inks);
@@ -309,7 +309,6 @@ function plumb(context, scene, line, frame, inks) {
       [frame.left, y],
       [x, y],
     ]);
-  label(context, scene, line, frame, inks);
 }
 
 /**
@@ -350,14 +349,15 @@ function label(context, scene, line, frame, inks) {
   const toTheRight = x + width + 14 < frame.width - MARGIN.right;
   const inTheWay = scene.view === 'value' ? y + 20 : bottom - SHADOW - 8;
   const height = Math.min(bottom - 14, Math.max(MARGIN.top + 8, inTheWay));
-  context.textAlign = toTheRight ? 'left' : 'right';
+  const start = toTheRight ? x + 8 : x - 8 - width;
+  context.textAlign = 'left';
   context.textBaseline = 'middle';
-  context.lineWidth = 4;
-  context.lineJoin = 'round';
-  context.strokeStyle = inks.card;
-  context.strokeText(line.label, toTheRight ? x + 8 : x - 8, height);
+  context.globalAlpha = 0.85;
+  context.fillStyle = inks.card;
+  context.fillRect(start - 4, height - 9, width + 8, 18);
+  context.globalAlpha = 1;
   context.fillStyle = inks.ink;
-  context.fillText(line.label, toTheRight ? x + 8 : x - 8, height);
+  context.fillText(line.label, start, height);
   context.font = fontOf();
 }
 

@@ -3,7 +3,7 @@
 // Nothing is computed here but differences of the report's own columns: curve minus nominal (error), curve minus curve
 // (residuals).
 
-/** @import { Curve, Orientation, Point, PointReport, State, Value, View } from './types.js' */
+/** @import { Curve, Orientation, Point, PointReport, State, View } from './types.js' */
 import { extent } from 'd3-array';
 import { argumentOf, axisNames, orientationOf, responseOf } from './picture-range.js';
 import { pointsOf } from './visit.js';
@@ -46,7 +46,7 @@ export function viewOf(state) {
  * @returns {Scene}
  */
 export function sceneOf(state) {
-  const { visit, report, drawn, asFoundCurve, answer } = state;
+  const { visit, report, drawn, asFoundCurve } = state;
   const view = viewOf(state);
   const names = axisNames(visit);
   const orientation = orientationOf(visit);
@@ -71,7 +71,7 @@ export function sceneOf(state) {
       yUnit,
     ),
     earlier: asFoundCurve && view !== 'residuals' ? earlierPlaces(asFoundCurve, view, orientation) : [],
-    plumb: answer.value?.value ? plumbOf(state, answer.value, curve, view) : null,
+    plumb: null,
   };
 }
 
@@ -162,13 +162,12 @@ function glyphOf(point, shown) {
 /**
  * The reading on the axis of the values: below where the curve is read backwards, at the left where it is read forwards.
  * @param {State} state
- * @param {Value} reading
- * @param {CurvePlace[]} curve
- * @param {View} view
+ * @param {Scene} scene
  * @returns {Plumb|null}
  */
-function plumbOf({ visit }, reading, curve, view) {
-  const value = reading.value;
+export function plumbOf({ visit, answer }, { curve, view }) {
+  const reading = answer.value;
+  const value = reading?.value;
   if (!value || curve.length === 0) return null;
   const { density, median } = value;
   if (orientationOf(visit) === 'indication_from_reference') {

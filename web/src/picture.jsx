@@ -6,7 +6,7 @@
 import { useEffect, useMemo, useRef, useState } from 'preact/hooks';
 import { frameOf, inksOf, markNear, paint, paintReadOff } from './picture-paint.js';
 import { orientationOf } from './picture-range.js';
-import { asError, heightAt, sceneOf, viewOf, viewsOf } from './picture-scene.js';
+import { asError, heightAt, plumbOf, sceneOf, viewOf, viewsOf } from './picture-scene.js';
 import { PictureTable } from './picture-table.jsx';
 import { percent } from './words.js';
 
@@ -56,7 +56,8 @@ function Canvas({ core, store, state, dispatch, place, setPlace, said }) {
   const over = useRef(/** @type {HTMLCanvasElement|null} */ (null));
   const frame = useRef(/** @type {Frame|null} */ (null));
   const { size, repaints } = useSize(box);
-  const scene = useMemo(() => sceneOf(state), [state.visit, state.report, state.drawn, state.answer, state.view]);
+  const still = useMemo(() => sceneOf(state), [state.visit, state.report, state.drawn, state.view]);
+  const scene = useMemo(() => ({ ...still, plumb: plumbOf(state, still) }), [still, state.answer]);
   useEffect(() => {
     const context = prepared(base.current, size);
     if (!context || !box.current) return;

@@ -20,6 +20,11 @@ export function StateLine({ core, store, state, dispatch }) {
           </span>
           <strong>{lead}</strong> {sentence}
         </p>
+        {state.busy && (
+          <button type="button" class="small" onClick={() => store.stop()}>
+            Stop and go back
+          </button>
+        )}
         {count > 0 && (
           <button
             type="button"

@@ -1,20 +1,22 @@
 // The state of the page, in one place: action → visit → report → draw. One reducer says what an action does; after it
 // the store asks the core for whatever follows from the new visit or the new reading, so that nothing shown is stale.
 
+/** @import { Helper } from './helper.js' */
 /** @import { Action, Answer, Asked, Core, Notice, Opened, State, Visit } from './types.js' */
-import { firstUnread, readPieces } from './cells.js';
-import { drawnRange } from './picture-range.js';
+import { readPieces } from './cells.js';
+import { follow } from './following.js';
 import { influencesOf, pointsOf } from './visit.js';
 
 const STEPS = 500;
-const PLACES = 241;
+const COLUMNS = 8;
 const MANY_ROWS = 3000;
 
 /**
  * @param {Core} core
+ * @param {Helper} helper for tables so long that the page would wait
  * @param {{ visit: Visit, origin: string, stage: State['stage'], opened: Opened|null, mode: string }} start
  */
-export function createStore(core, { visit, origin, stage, opened, mode }) {
+export function createStore(core, helper, { visit, origin, stage, opened, mode }) {
   /** @type {import('./types.js').Appraisal|null} */
   let appraisal = null;
   /** @type {Set<() => void>} */
@@ -34,6 +36,7 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
     unread: null,
     busy: false,
     said: '',
+    followedOf: null,
     reading: firstReading(visit),
     answer: { problem: null, alternatives: null, value: null },
     view: 'error',
@@ -53,7 +56,12 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
   function dispatch(action) {
     const next = reduce(state, action);
     if (next === state) return;
-    state = settle(next, state);
+    show(settle(next, state));
+  }
+
+  /** @param {State} next */
+  function show(next) {
+    state = next;
     for (const listener of listeners) listener();
   }
 
@@ -63,34 +71,44 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
    * @returns {State}
    */
   function settle(next, previous) {
-    if (next.visit !== previous.visit) {
-      if (pointsOf(next.visit).length > MANY_ROWS) return postponed(next, previous);
-      try {
-        return answered(appraised({ ...next, busy: false }));
-      } catch (problem) {
-        return { ...previous, notice: refusal(problem) };
-      }
-    }
-    return next.reading === previous.reading ? next : answered(next);
+    if (next.visit === previous.visit) return next.reading === previous.reading ? next : answered(next);
+    if (next.visit === previous.followedOf) return answered({ ...next, busy: false });
+    return isLong(next.visit) ? postponed(next, previous) : atOnce(next, previous);
   }
 
   /**
-   * Long tables: the page is drawn first, then the core is asked, so that typing never waits.
+   * @param {State} next
+   * @param {State} previous what stays where the core refuses
+   * @returns {State}
+   */
+  function atOnce(next, previous) {
+    try {
+      return answered(appraised({ ...next, busy: false }));
+    } catch (problem) {
+      return { ...previous, notice: refusal(problem) };
+    }
+  }
+
+  /**
+   * Long tables: the page stays in use while the helper works; where there can be no helper, the page works itself.
    * @param {State} next
    * @param {State} previous
    * @returns {State}
    */
   function postponed(next, previous) {
-    setTimeout(() => {
-      if (state.visit !== next.visit) return;
-      try {
-        state = answered(appraised({ ...state, busy: false }));
-      } catch (problem) {
-        state = { ...previous, notice: refusal(problem) };
-      }
-      for (const listener of listeners) listener();
-    }, 30);
-    return { ...next, busy: true };
+    helper.follow(next.visit).then(
+      (followed) => {
+        if (state.visit !== next.visit) return;
+        appraisal?.free();
+        appraisal = null;
+        show(answered({ ...state, ...followed, busy: false, followedOf: next.visit }));
+      },
+      (problem) => {
+        if (problem !== null && state.visit === next.visit)
+          show(problem instanceof Error ? atOnce(state, previous) : { ...previous, notice: refusal(problem) });
+      },
+    );
+    return answered({ ...next, busy: true });
   }
 
   /**
@@ -99,22 +117,45 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
    */
   function appraised(next) {
     if (next.stage === 'altered') return next;
-    const handle = core.appraise(next.visit);
-    const report = handle.outline();
+    const { appraisal: handle, followed } = follow(core, next.visit);
+    helper.stop();
     appraisal?.free();
     appraisal = handle;
-    const [first, last] = drawnRange(next.visit, report);
-    const rows = report.fit ? handle.curve(first, last, PLACES) : new Float64Array();
-    const asFoundCurve = report.as_found ? (handle.report().as_found?.curve ?? null) : null;
-    return { ...next, report, drawn: { first, last, rows }, asFoundCurve, unread: firstUnread(core, next.visit) };
+    return { ...next, ...followed, followedOf: next.visit };
   }
 
   /**
+   * The reading as a value. It touches neither the visit nor its undo.
    * @param {State} next
    * @returns {State}
    */
   function answered(next) {
-    return { ...next, answer: answer(core, appraisal, next) };
+    if (next.busy) return { ...next, answer: { problem: 'Computing; the value follows.', alternatives: null, value: null } };
+    const { problem, alternatives, reading } = question(core, next);
+    if (!reading) return { ...next, answer: { problem, alternatives, value: null } };
+    if (!appraisal) {
+      readBeside(next, reading);
+      return next;
+    }
+    try {
+      return { ...next, answer: { problem: null, alternatives: null, value: appraisal.read(reading) } };
+    } catch (cause) {
+      return { ...next, answer: { problem: refusal(cause).sentence, alternatives: null, value: null } };
+    }
+  }
+
+  /**
+   * @param {State} next
+   * @param {object} reading
+   */
+  function readBeside({ visit, reading: typed }, reading) {
+    const answer = (/** @type {Answer} */ given) => {
+      if (state.visit === visit && state.reading === typed) show({ ...state, answer: given });
+    };
+    helper.read(visit, reading).then(
+      (value) => answer({ problem: null, alternatives: null, value }),
+      (problem) => problem !== null && answer({ problem: refusal(problem).sentence, alternatives: null, value: null }),
+    );
   }
 
   return {
@@ -126,12 +167,17 @@ export function createStore(core, { visit, origin, stage, opened, mode }) {
       return () => listeners.delete(listener);
     },
     /**
-     * Rows of eight numbers over places, from the fit that is shown.
+     * Rows of eight numbers over places, from the fit that is shown; of a long table those drawn that are nearest.
      * @param {number} first
      * @param {number} last
      * @param {number} count
      */
-    curve: (first, last, count) => appraisal?.curve(first, last, count) ?? new Float64Array(),
+    curve: (first, last, count) => appraisal?.curve(first, last, count) ?? nearestRows(state.drawn, first, last, count),
+    /** Stops the helper and goes back to what was there before. */
+    stop() {
+      helper.stop();
+      if (state.busy) dispatch({ type: 'undo' });
+    },
   };
 }
 
@@ -226,31 +272,50 @@ function stepped(state, steps, from, to) {
 }
 
 /**
- * The reading as a value. It touches neither the visit nor its undo.
+ * What is typed as a question to the core, or why it is none.
  * @param {Core} core
- * @param {import('./types.js').Appraisal|null} appraisal
  * @param {State} state
- * @returns {Answer}
+ * @returns {{ problem: string|null, alternatives: number[][]|null, reading: { indications: number[], influences: Record<string, number> }|null }}
  */
-function answer(core, appraisal, { visit, report, reading }) {
+function question(core, { visit, report, reading }) {
   const { values, alternatives, sentence } = readPieces(core, reading.text);
-  if (!values) return { problem: sentence, alternatives, value: null };
+  const refused = (/** @type {string|null} */ problem) => ({ problem, alternatives, reading: null });
+  if (!values) return refused(sentence);
   /** @type {Record<string, number>} */
   const influences = {};
   for (const name of influencesOf(visit)) {
     const text = reading.influences[name] ?? '';
     if (text.trim() === '') continue;
     const pieces = readPieces(core, text);
-    if (pieces.values?.length !== 1)
-      return { problem: `${name}: ${pieces.sentence ?? 'write one number that reads in one way only.'}`, alternatives: null, value: null };
+    if (pieces.values?.length !== 1) return refused(`${name}: ${pieces.sentence ?? 'write one number that reads in one way only.'}`);
     influences[name] = pieces.values[0];
   }
-  if (!appraisal || !report?.fit) return { problem: 'There is no curve yet to read a value from.', alternatives: null, value: null };
-  try {
-    return { problem: null, alternatives: null, value: appraisal.read({ indications: values, influences }) };
-  } catch (problem) {
-    return { problem: refusal(problem).sentence, alternatives: null, value: null };
+  if (!report?.fit) return refused('There is no curve yet to read a value from.');
+  return { problem: null, alternatives: null, reading: { indications: values, influences } };
+}
+
+/**
+ * @param {State['drawn']} drawn
+ * @param {number} first
+ * @param {number} last
+ * @param {number} count
+ */
+function nearestRows(drawn, first, last, count) {
+  if (!drawn || drawn.rows.length === 0) return new Float64Array();
+  const most = drawn.rows.length / COLUMNS - 1;
+  const rows = [];
+  for (let at = 0; at < count; at += 1) {
+    const place = count === 1 ? first : first + ((last - first) * at) / (count - 1);
+    const nearest = Math.round((most * (place - drawn.first)) / (drawn.last - drawn.first));
+    const start = COLUMNS * Math.max(0, Math.min(most, nearest));
+    rows.push(...drawn.rows.subarray(start, start + COLUMNS));
   }
+  return Float64Array.from(rows);
+}
+
+/** @param {Visit} visit */
+function isLong(visit) {
+  return pointsOf(visit).length > MANY_ROWS;
 }
 
 /**

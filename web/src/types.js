@@ -113,6 +113,7 @@
 /** @typedef {{ text: string, influences: Record<string, string> }} Reading what is typed into the reading field: no part of the visit */
 /** @typedef {{ problem: string|null, alternatives: number[][]|null, value: Value|null }} Answer */
 /** @typedef {{ row: number, sentence: string }} Unread */
+/** @typedef {{ report: Report, drawn: Drawn, asFoundCurve: Curve|null, unread: Unread|null }} Followed what the core says of a visit */
 /** @typedef {{ visit: Visit, what: string, origin: string, merge: string|null }} Step */
 /** @typedef {{ key: string, at: string, title: string, revision: number, visit: Visit, origin: string }} Draft */
 /** @typedef {{ first: number, last: number, rows: Float64Array }} Drawn */
@@ -121,7 +122,7 @@
  * Everything the page shows follows from this.
  * @typedef {{
  *   visit: Visit, origin: string, revision: number, past: Step[], future: Step[], lastMerge: string|null, saved: Visit|null,
- *   report: Report|null, drawn: Drawn|null, asFoundCurve: Curve|null, unread: Unread|null, busy: boolean, said: string,
+ *   report: Report|null, drawn: Drawn|null, asFoundCurve: Curve|null, unread: Unread|null, busy: boolean, said: string, followedOf: Visit|null,
  *   reading: Reading, answer: Answer,
  *   view: View, panel: Panel|null, notice: Notice|null, notesOpen: boolean, entering: PointState, firstRow: number,
  *   opened: Opened|null, stage: 'sheet'|'leaf'|'altered', drafts: Draft[], mode: string
