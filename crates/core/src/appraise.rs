@@ -283,7 +283,8 @@ impl Appraisal {
 
     /// First and last place at which the curve is worth drawing, in the unit of the argument.
     pub fn drawn_range(&self) -> (f64, f64) {
-        let spanned = self.fitted.as_ref().map_or([0.0, 1.0], |f| f.spanned);
+        let spanned = self.fitted.as_ref().map(|f| f.spanned).filter(|s| s[0] <= s[1]);
+        let spanned = spanned.or(self.range().map(|(a, b)| [a, b])).unwrap_or([0.0, 1.0]);
         let (low, high) = match (self.visit.model.orientation, self.range()) {
             (Orientation::IndicationFromReference, Some(range)) => range,
             (_, Some(range)) => match self.nominal {
@@ -302,7 +303,7 @@ impl Appraisal {
     pub fn read(&self, reading: &Reading) -> Value {
         let refused = |problem: Problem| Value {
             indications: reading.indications.clone(),
-            mean_indication: reading.indications.first().copied().filter(|y| y.is_finite()).unwrap_or(0.0),
+            mean_indication: None,
             value: None,
             linearised: None,
             solutions: Vec::new(),
@@ -354,7 +355,7 @@ impl Appraisal {
     /// The instrument's range, ascending; `None` where none or an empty one is given.
     fn range(&self) -> Option<(f64, f64)> {
         let (a, b) = self.visit.instrument.range?;
-        (a.is_finite() && b.is_finite() && a != b).then_some((a.min(b), a.max(b)))
+        (visit::is_usable(a) && visit::is_usable(b) && a != b).then_some((a.min(b), a.max(b)))
     }
 
     /// What cannot occur; no limit where the two contradict each other.
@@ -432,11 +433,11 @@ impl Appraisal {
             residual_degrees_of_freedom: (n > p).then(|| (n - p) as f64),
             log_evidence: posterior.log_evidence.filter(|e| e.is_finite()),
             evidence_is_proper: posterior.evidence_is_proper,
-            condition_number: posterior.condition_number,
+            condition_number: Some(posterior.condition_number).filter(|c| c.is_finite()),
             effective_parameters: diagnostics.iter().map(|d| d.leverage).sum(),
             left_out_log_density: left_out.map(|all| all.iter().sum()),
             points_used: n,
-            spanned: fitted.spanned,
+            spanned: (n > 0).then_some(fitted.spanned),
         }
     }
 
@@ -487,6 +488,7 @@ impl Appraisal {
             shifted.parts.iter_mut().for_each(|part| part.location -= n);
             self.estimate(&shifted, &unit)
         });
+        let error = error.filter(|e| e.estimate.is_finite());
         Some(At {
             x,
             curve: self.estimate(&mean, &unit),
@@ -560,7 +562,7 @@ impl Appraisal {
             expanded_uncertainty: None,
             error,
             error_display: error.map_or_else(String::new, |e| display::error_of_indication(e, indication, reference)),
-            error_percent_of_span: error.zip(span).map(|(e, s)| 100.0 * e / s),
+            error_percent_of_span: error.zip(span).map(|(e, s)| 100.0 * e / s).filter(|e| e.is_finite()),
         }
     }
 
@@ -595,9 +597,12 @@ impl Appraisal {
                 (None, Some(_)) => "reference value",
                 (Some(_), None) => "indication",
                 (Some(_), Some(i)) if i.values().is_empty() => "indication",
+                (Some(x), _) if !visit::is_usable(x) => "usable reference value",
+                (_, Some(i)) if i.values().iter().any(|y| !visit::is_usable(*y)) => "usable indication",
                 _ => continue,
             };
-            let place = format!("points[{index}].{}", if missing == "indication" { missing } else { "reference" });
+            let field = if missing.ends_with("indication") { "indication" } else { "reference" };
+            let place = format!("points[{index}].{field}");
             let sentence = format!("Point {number} has no {missing} and is left out: fill it in.");
             self.messages.push(Problem::warning("point_incomplete", place, sentence).with("point", number));
         }
@@ -605,8 +610,10 @@ impl Appraisal {
 
     fn say_of_instrument(&mut self) {
         if let (Some(given), None) = (self.visit.instrument.range, self.range()) {
-            let sentence =
-                format!("The range from {} to {} is empty: the span of the points is used.", given.0, given.1);
+            let sentence = format!(
+                "The range from {} to {} is empty or beyond what can be computed with: the span of the points is used.",
+                given.0, given.1
+            );
             self.messages.push(Problem::warning("range_empty", "instrument.range", sentence));
         }
         if let Some((first, last)) = self.visit.instrument.range.filter(|(first, last)| first > last) {

@@ -13,7 +13,7 @@ use crate::chebyshev::Piecewise;
 use crate::float;
 
 /// Places scanned for solutions and maxima.
-const SCAN: usize = 512;
+const SCAN: usize = 256;
 
 /// Points of a density that is handed on for drawing.
 const DRAWN: usize = 81;
@@ -63,10 +63,16 @@ pub struct Described {
     pub drawn: (Vec<f64>, Vec<f64>),
 }
 
-/// Every x in [low, high] with f(x) = target, ascending, for `mean_and_slope` = (f − target, f′).
-pub fn solutions(low: f64, high: f64, mean_and_slope: &dyn Fn(f64) -> (f64, f64)) -> (Vec<Solution>, Vec<Seed>) {
+/// Every x in [low, high] with f(x) = target, ascending, for `mean` = f − target and `mean_and_slope` = (f − target,
+/// f′); and the places where the curve turns without reaching the target.
+pub fn solutions(
+    low: f64,
+    high: f64,
+    mean: &dyn Fn(f64) -> f64,
+    mean_and_slope: &dyn Fn(f64) -> (f64, f64),
+) -> (Vec<Solution>, Vec<Seed>) {
     let places: Vec<f64> = (0..=SCAN).map(|k| place(low, high, k)).collect();
-    let gaps: Vec<f64> = places.iter().map(|&x| mean_and_slope(x).0).collect();
+    let gaps: Vec<f64> = places.iter().map(|&x| mean(x)).collect();
     let mut found: Vec<Solution> = Vec::new();
     let mut near = Vec::new();
     for k in 0..SCAN {
@@ -159,8 +165,9 @@ impl ValueDensity {
     /// From the logarithm of an unnormalised density; −∞ or NaN counts as zero. `None` where it is zero everywhere.
     pub fn new(extent: [f64; 2], log_density: &dyn Fn(f64) -> f64, seeds: &[Seed]) -> Option<ValueDensity> {
         let [low, high] = extent;
-        let scanned = (0..=SCAN).map(|k| place(low, high, k)).chain(seeds.iter().map(|s| s.x));
-        let mut best = Seed { x: low, width: (high - low) / SCAN as f64 };
+        // The seeds stand where the density is greatest; the scan is for extents without any.
+        let scanned = (0..=SCAN).step_by(SCAN / 64).map(|k| place(low, high, k)).chain(seeds.iter().map(|s| s.x));
+        let mut best = Seed { x: low, width: (high - low) / 64.0 };
         let mut log_scale = f64::NEG_INFINITY;
         for x in scanned.filter(|x| *x >= low && *x <= high) {
             let value = log_density(x);

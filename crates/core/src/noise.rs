@@ -5,7 +5,7 @@
 //! noise. Profile (1 + ρ·|x|/x_span)², or 1.
 
 use crate::problem::Problem;
-use crate::visit::{Noise, NoiseKind, NumberOr, Profile, Visit};
+use crate::visit::{Noise, NoiseKind, NumberOr, Profile, Visit, is_usable};
 
 /// What is known about σ.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -30,7 +30,7 @@ impl Sigma {
     /// A standard deviation or degrees of freedom that are missing or not positive.
     pub fn of(noise: &Noise) -> Result<Sigma, Problem> {
         let deviation = |least_open: bool| match noise.standard_deviation {
-            Some(s) if s.is_finite() && (s > 0.0 || (s == 0.0 && !least_open)) => Ok(s),
+            Some(s) if is_usable(s) && (s > 0.0 || (s == 0.0 && !least_open)) => Ok(s),
             Some(s) => Err(Problem::error(
                 "noise_not_positive",
                 "model.noise.standard_deviation",
@@ -80,7 +80,7 @@ impl Growth {
             Some(Profile::Proportional { rho: NumberOr::Number(rho) }) => *rho,
         };
         let span = visit.instrument.range.map_or(points_span, |(a, b)| (b - a).abs());
-        if rho >= 0.0 && rho.is_finite() && span > 0.0 && span.is_finite() {
+        if rho >= 0.0 && is_usable(rho) && span > 0.0 && span.is_finite() {
             Ok((Growth { rho, span }, false))
         } else {
             Err(Problem::error(

@@ -5,7 +5,7 @@
 
 use crate::dd::Dd;
 use crate::problem::Problem;
-use crate::visit::{Instrument, Nominal};
+use crate::visit::{Instrument, Nominal, is_usable};
 
 /// A checked nominal characteristic.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -46,7 +46,7 @@ impl Characteristic {
     }
 
     fn scaled(instrument: &Instrument, output: (f64, f64), root: bool) -> Result<Characteristic, Problem> {
-        let wide = |(a, b): (f64, f64)| a.is_finite() && b.is_finite() && a != b;
+        let wide = |(a, b): (f64, f64)| is_usable(a) && is_usable(b) && a != b;
         match instrument.range {
             Some(input) if wide(input) && wide(output) => Ok(Characteristic::Scaled { input, output, root }),
             _ => Err(Problem::warning(

@@ -6,7 +6,7 @@
 
 use crate::dd::Dd;
 use crate::problem::Problem;
-use crate::visit::{Orientation, Point, State, Visit};
+use crate::visit::{Orientation, Point, State, Visit, is_usable};
 
 /// One row of the fit.
 #[derive(Clone, Debug)]
@@ -44,16 +44,16 @@ pub fn response(orientation: Orientation, reference: f64, indication: f64) -> Dd
     }
 }
 
-/// Whether a point has both numbers, is finite and is not set aside.
+/// Whether a point has both numbers, within what can be computed with, and is not set aside.
 pub fn is_used(point: &Point) -> bool {
     point.set_aside.is_none() && pair(point).is_some()
 }
 
 /// Reference and indications of a point that is complete.
 pub fn pair(point: &Point) -> Option<(f64, &[f64])> {
-    let reference = point.reference.filter(|r| r.is_finite())?;
+    let reference = point.reference.filter(|r| is_usable(*r))?;
     let values = point.indication.as_ref()?.values();
-    (!values.is_empty() && values.iter().all(|v| v.is_finite())).then_some((reference, values))
+    (!values.is_empty() && values.iter().all(|v| is_usable(*v))).then_some((reference, values))
 }
 
 /// The rows of the points in one state, in the order given.
@@ -105,7 +105,7 @@ fn influences_of(
     let value = |name: &String| point.influences.get(name).or_else(|| visit.conditions.get(name)).copied();
     for &k in needed {
         let name = &names[k];
-        if !value(name).is_some_and(f64::is_finite) {
+        if !value(name).is_some_and(is_usable) {
             let sentence = format!(
                 "Point {} has no {name}, which the shape uses: fill it in, state it in the conditions, or set the point aside.",
                 index + 1
@@ -141,7 +141,7 @@ fn repeats(index: usize, point: &Point, given: usize) -> Result<f64, Problem> {
 fn own_uncertainty(index: usize, point: &Point) -> Result<f64, Problem> {
     match point.indication_uncertainty {
         None => Ok(0.0),
-        Some(u) if u >= 0.0 && u.is_finite() => Ok(u),
+        Some(u) if u >= 0.0 && is_usable(u) => Ok(u),
         Some(u) => {
             let place = format!("points[{index}].indication_uncertainty");
             let sentence =

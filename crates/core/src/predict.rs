@@ -170,6 +170,12 @@ impl Predictor<'_> {
         (self.at_row(&row, argument, NewIndication::default()), self.at_row(&row, argument, new))
     }
 
+    /// The mean curve at a place.
+    pub fn mean(&self, argument: f64, influences: &[f64]) -> Dd {
+        let row = self.shape.row(argument, influences);
+        self.posterior.components.iter().map(|c| c.location_at(&row) * c.weight).sum()
+    }
+
     /// The mean curve and its slope at a place.
     pub fn mean_and_slope(&self, argument: f64, influences: &[f64]) -> (Dd, Dd) {
         let (row, slope) = self.shape.row_with_slope(argument, influences);

@@ -17,7 +17,7 @@ use crate::noise::Sigma;
 use crate::predict::{Mixture, NewIndication, Predictor};
 use crate::problem::Problem;
 use crate::report::{BudgetLine, Density, Linearised, Value, ValueReport};
-use crate::visit::{KnownValue, Orientation, Reading};
+use crate::visit::{KnownValue, Orientation, Reading, is_usable};
 
 /// A further mode counts where this much of the probability belongs to it.
 const MODE_MASS: f64 = 0.005;
@@ -68,7 +68,7 @@ impl Reader<'_> {
             / Dd::from(reading.indications.len().max(1) as f64);
         let mut value = Value {
             indications: reading.indications.clone(),
-            mean_indication: mean.to_f64(),
+            mean_indication: Some(mean.to_f64()).filter(|m| m.is_finite()),
             value: None,
             linearised: None,
             solutions: Vec::new(),
@@ -95,16 +95,16 @@ impl Reader<'_> {
         if reading.indications.is_empty() {
             return Err(Problem::error("reading_empty", "indications", "Type what the instrument shows."));
         }
-        if reading.indications.iter().any(|y| !y.is_finite()) {
+        if reading.indications.iter().any(|y| !is_usable(*y)) {
             return Err(Problem::error(
                 "reading_not_a_number",
                 "indications",
-                "What the instrument shows must be a number.",
+                "What the instrument shows must be a number of usual size.",
             ));
         }
         let checked = |u: Option<f64>, place: &str, words: &str| match u {
             None => Ok(0.0),
-            Some(u) if u >= 0.0 && u.is_finite() => Ok(u),
+            Some(u) if u >= 0.0 && is_usable(u) => Ok(u),
             Some(u) => Err(Problem::error(
                 "reading_uncertainty",
                 place,
@@ -114,7 +114,7 @@ impl Reader<'_> {
         let resolution = checked(reading.resolution, "resolution", "The resolution of the reading")?;
         let own = checked(reading.indication_uncertainty, "indication_uncertainty", "The uncertainty of the reading")?;
         if let Some(known) = reading.known
-            && !(known.standard_uncertainty > 0.0 && known.standard_uncertainty.is_finite() && known.mean.is_finite())
+            && !(known.standard_uncertainty > 0.0 && is_usable(known.standard_uncertainty) && is_usable(known.mean))
         {
             return Err(Problem::error(
                 "reading_known",
@@ -151,7 +151,8 @@ impl Reader<'_> {
             let (f, slope) = self.predictor.mean_and_slope(x, influences);
             ((f - mean).to_f64(), slope.to_f64())
         };
-        let (found, near) = solutions(extent[0], extent[1], &gap);
+        let curve = |x: f64| (self.predictor.mean(x, influences) - mean).to_f64();
+        let (found, near) = solutions(extent[0], extent[1], &curve, &gap);
         value.solutions = found.iter().map(|s| self.linearised(*s, influences, new)).collect();
         let log_density = |x: f64| {
             let indication = self.predictor.indication(x, influences, new);
@@ -387,7 +388,7 @@ impl Reader<'_> {
             return Vec::new();
         };
         let inverted = self.orientation == Orientation::IndicationFromReference;
-        let place = if inverted { linearised.estimate } else { value.mean_indication };
+        let place = if inverted { linearised.estimate } else { value.mean_indication.unwrap_or(f64::NAN) };
         let curve = scale_of(&self.predictor.curve(place, influences));
         let repeat = scale_of(&self.predictor.indication(
             place,

@@ -135,16 +135,17 @@ pub struct Fit {
     pub log_evidence: Option<f64>,
     /// Whether that is a proper evidence; otherwise only differences between shapes with the same flat part mean anything.
     pub evidence_is_proper: bool,
-    /// Ratio of the largest to the smallest singular value of the design with columns of unit length.
-    pub condition_number: f64,
+    /// Ratio of the largest to the smallest singular value of the design with columns of unit length;
+    /// `null` beyond double precision.
+    pub condition_number: Option<f64>,
     /// Sum of the leverages.
     pub effective_parameters: f64,
     /// Σ ln p(yᵢ | the others); `null` where one of them does not exist.
     pub left_out_log_density: Option<f64>,
     /// Rows used.
     pub points_used: usize,
-    /// Least and greatest argument of the rows used.
-    pub spanned: Interval,
+    /// Least and greatest argument of the rows used; `null` without any.
+    pub spanned: Option<Interval>,
 }
 
 /// The curve and both bands, and the same as errors of indication.
@@ -200,8 +201,8 @@ pub struct At {
 pub struct Value {
     /// The indications, as given.
     pub indications: Vec<f64>,
-    /// Their mean.
-    pub mean_indication: f64,
+    /// Their mean; `null` where there is none.
+    pub mean_indication: Option<f64>,
     /// The value; `null` where none exists, with the reason in `messages`.
     pub value: Option<ValueReport>,
     /// The law-of-propagation value for comparison: the solution nearest to the median; `null` where there is none.

@@ -15,6 +15,14 @@ pub const SCHEMA: &str = "bandleaf.visit.1";
 /// The largest number of rows (single indications) that a visit may hold.
 pub const MOST_ROWS: usize = 100_000;
 
+/// The largest magnitude that is computed with; squares and products of it still fit a double.
+pub const LARGEST: f64 = 1e100;
+
+/// Whether a number can be computed with: finite, and of a magnitude up to [`LARGEST`].
+pub fn is_usable(value: f64) -> bool {
+    value.abs() <= LARGEST
+}
+
 /// The largest number of terms in a shape.
 pub const MOST_TERMS: usize = 13;
 
