@@ -4,8 +4,8 @@ import assert from 'node:assert';
 import { readFileSync } from 'node:fs';
 import { homedir } from 'node:os';
 import { join } from 'node:path';
-import { pagePart } from './page-part.mjs';
 import { root } from './packages.mjs';
+import { pagePart } from './page-part.mjs';
 
 const places = [root, homedir(), '/home/', '/root/', '/Users/', '/usr/lib/', '/.cargo/', '/.rustup/', 'C:\\'];
 

@@ -24,6 +24,7 @@ assert(!met('GPL-3.0-only', shipped) && !met('MIT AND GPL-3.0-only', shipped) &&
 
 const all = packages();
 const refused = all.filter((one) => !met(one.licence, one.shipped ? shipped : [...shipped, ...toolsOnly]));
-for (const one of refused) console.error(`   ${one.kind} ${one.name} ${one.version}: "${one.licence}" is not on the list in scripts/licences.json`);
+for (const one of refused)
+  console.error(`   ${one.kind} ${one.name} ${one.version}: "${one.licence}" is not on the list in scripts/licences.json`);
 console.log(`   ${all.length} packages, ${all.filter((one) => one.shipped).length} of them shipped, ${refused.length} refused`);
 process.exitCode = refused.length ? 1 : 0;

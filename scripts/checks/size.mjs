@@ -9,7 +9,8 @@ const BUDGET = 500_000;
 const sizes = JSON.parse(readFileSync(join(root, 'dist', 'bandleaf.sizes.json'), 'utf8'));
 const page = readFileSync(join(root, 'dist', 'bandleaf.html')).length;
 
-for (const [part, bytes] of Object.entries(sizes)) console.log(`   ${part.replaceAll('_', ' ').padEnd(26)} ${String(bytes).padStart(8)} bytes`);
+for (const [part, bytes] of Object.entries(sizes))
+  console.log(`   ${part.replaceAll('_', ' ').padEnd(26)} ${String(bytes).padStart(8)} bytes`);
 console.log(`   budget ${BUDGET} bytes, ${BUDGET - page} left`);
 if (page > BUDGET) {
   console.error('   The page is over its budget.');

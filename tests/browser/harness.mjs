@@ -114,6 +114,19 @@ export async function waitForState(tab, ...states) {
   return tab.evaluate(() => document.documentElement.dataset.state ?? '');
 }
 
+/**
+ * Types into a field in place of what stands there.
+ * @param {Tab} tab
+ * @param {string} selector
+ * @param {string} text
+ */
+export async function typeInto(tab, selector, text) {
+  await tab.waitForSelector(selector, { visible: true });
+  await tab.focus(selector);
+  await tab.$eval(selector, (field) => /** @type {HTMLInputElement} */ (field).select());
+  await tab.keyboard.type(text);
+}
+
 /** The text that a person sees. @param {Tab} tab */
 export function shownText(tab) {
   return tab.evaluate(() => document.body.innerText);
