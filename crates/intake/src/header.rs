@@ -3,7 +3,7 @@
 use crate::cells::Row;
 use crate::delimiter::usual_width;
 use crate::number::{scan, trimmed};
-use crate::role::{Meaning, understand};
+use crate::role::{Meaning, Role, understand};
 use crate::unit::is_unit;
 
 /// How far down a heading is looked for.
@@ -65,6 +65,9 @@ pub(crate) fn layout(mut rows: Vec<Row>, header: Option<bool>) -> Layout {
 /// The row whose names say what the columns are, or the row of words right above the first row of numbers.
 fn find(rows: &[Row], width: usize) -> Option<usize> {
     let beginning = rows.get(..rows.len().min(DEEPEST))?;
+    if beginning.first().is_some_and(is_row_with_counted_repeats) {
+        return Some(0);
+    }
     let candidate = |row: &Row| is_row_of_words(row) && row.len() >= width.min(2);
     let says = |row: &Row| {
         let known =
@@ -98,6 +101,17 @@ fn is_row_of_words(row: &Row) -> bool {
     };
     row.iter().all(|cell| cell.is_empty() || is_word(cell))
         && row.iter().any(|cell| cell.chars().any(char::is_alphabetic))
+}
+
+/// "reference; 1; 2; 3": names, and the repeats counted.
+fn is_row_with_counted_repeats(row: &Row) -> bool {
+    let (counted, named): (Vec<&str>, Vec<&str>) =
+        row.iter().filter(|cell| !cell.is_empty()).partition(|cell| cell.bytes().all(|byte| byte.is_ascii_digit()));
+    let says_reference =
+        |name: &&str| matches!(understand(&split_unit(name).name).meaning, Meaning::Is(Role::Reference, _));
+    counted.len() > 1
+        && counted.iter().enumerate().all(|(index, cell)| **cell == (index + 1).to_string())
+        && named.iter().any(says_reference)
 }
 
 fn is_row_of_units(row: &Row) -> bool {
@@ -196,7 +210,8 @@ mod tests {
     #[test]
     fn the_heading_is_found() {
         // rows above, names, data rows
-        let cases: [(&str, usize, Option<&[&str]>, usize); 8] = [
+        let cases: [(&str, usize, Option<&[&str]>, usize); 9] = [
+            ("reference;1;2\n10;10,1;10,2\n", 0, Some(&["reference", "1", "2"]), 1),
             ("reference;indication\n1;2\n3;4\n", 0, Some(&["reference", "indication"]), 2),
             ("1;2\n3;4\n", 0, None, 2),
             ("A;B\n1;2\n", 0, Some(&["A", "B"]), 1),

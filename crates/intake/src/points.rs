@@ -150,7 +150,11 @@ impl<'a> Work<'a> {
         } else if common.typed.reference.is_some() {
             self.note_empty(row, series);
             points.push(common);
-        } else {
+        } else if self
+            .readers
+            .iter()
+            .any(|reader| matches!(reader.column.role, Some(Role::Reference | Role::Indication)))
+        {
             let number = row.number;
             let start = quoted(row.iter().find(|cell| !cell.is_empty()).unwrap_or(""));
             self.report(|| {

@@ -104,8 +104,9 @@ const REFERENCE: [&str; 14] = [
 ];
 const REFERENCE_WEAK: [&str; 10] =
     ["applied", "input", "setpoint", "set", "known", "nominal", "expected", "ideal", "dip", "x"];
-const INDICATION: [&str; 20] = [
+const INDICATION: [&str; 21] = [
     "indication",
+    "ind",
     "indications",
     "indicated",
     "reading",

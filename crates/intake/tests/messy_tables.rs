@@ -288,6 +288,15 @@ fn what_names_do_not_tell_is_asked() {
         ["Column 1", "Column 3", "Column 4", "Column 1, column 3 and column 4 are repeats of one indication"]
     );
 
+    let text = "reference;1;2\n10;10,1;10,2\n20;20,1;20,2\n";
+    let counted = read(text);
+    let repeats = counted.questions[0].choices.last().expect("a choice");
+    assert_eq!(repeats.label, "Column \"1\" and column \"2\" are repeats of one indication");
+    assert_eq!(
+        pairs(&read_text(text, &repeats.option)),
+        [(Some(10.0), vec![10.1, 10.2]), (Some(20.0), vec![20.1, 20.2])]
+    );
+
     assert_eq!(question_codes(&read("reference;output;display\n1;4,0;1,0\n2;5,0;2,0\n")), ["indication"]);
     assert_eq!(question_codes(&read("150\n400\n")), ["roles"]);
     assert_eq!(question_codes(&read("1,5\n2,5\n")), ["delimiter"]);
