@@ -104,7 +104,7 @@ const REFERENCE: [&str; 14] = [
 ];
 const REFERENCE_WEAK: [&str; 10] =
     ["applied", "input", "setpoint", "set", "known", "nominal", "expected", "ideal", "dip", "x"];
-const INDICATION: [&str; 21] = [
+const INDICATION: [&str; 20] = [
     "indication",
     "ind",
     "indications",
@@ -125,7 +125,6 @@ const INDICATION: [&str; 21] = [
     "ist",
     "ablesung",
     "messwert",
-    "lecture",
 ];
 const INDICATION_WEAK: [&str; 11] =
     ["instrument", "gauge", "signal", "run", "trial", "measurement", "repeat", "sensor", "uut", "dut", "y"];
