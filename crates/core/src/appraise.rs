@@ -183,13 +183,16 @@ fn design_row(
         None => Ok(basis),
         Some(column) => {
             let term = shape.terms()[column].as_str();
-            let influences: String =
-                shape.influences_used().iter().map(|&k| format!(", {} = {}", names[k], row.influences[k])).collect();
+            let influences: String = shape
+                .influences_used()
+                .iter()
+                .map(|&k| format!(", {} = {}", names[k], display::as_given(row.influences[k])))
+                .collect();
             let sentence = format!(
                 "The term {term} has no finite value at point {} ({} = {}{influences}): choose another term, or set the point aside.",
                 row.point + 1,
                 variable(orientation),
-                row.argument
+                display::as_given(row.argument)
             );
             let side = if orientation == Orientation::IndicationFromReference { "reference" } else { "indication" };
             let place = format!("points[{}].{side}", row.point);
@@ -434,8 +437,8 @@ impl Appraisal {
             log_evidence: posterior.log_evidence.filter(|e| e.is_finite()),
             evidence_is_proper: posterior.evidence_is_proper,
             condition_number: Some(posterior.condition_number).filter(|c| c.is_finite()),
-            effective_parameters: diagnostics.iter().map(|d| d.leverage).sum(),
-            left_out_log_density: left_out.map(|all| all.iter().sum()),
+            effective_parameters: diagnostics.iter().fold(0.0, |sum, d| sum + d.leverage),
+            left_out_log_density: left_out.filter(|all| !all.is_empty()).map(|all| all.iter().sum()),
             points_used: n,
             spanned: (n > 0).then_some(fitted.spanned),
         }
@@ -617,6 +620,7 @@ impl Appraisal {
             self.messages.push(Problem::warning("range_empty", "instrument.range", sentence));
         }
         if let Some((first, last)) = self.visit.instrument.range.filter(|(first, last)| first > last) {
+            let (first, last) = (display::as_given(first), display::as_given(last));
             let sentence = format!("The range is stated from {first} to {last}: it is read from {last} to {first}.");
             self.messages.push(Problem::note("range_turned", "instrument.range", sentence));
         }

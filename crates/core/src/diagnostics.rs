@@ -80,6 +80,6 @@ pub fn of_row(posterior: &Posterior, basis: &[Dd], response: Dd, index: usize) -
     let scale = (variance / left).sqrt() * deviation;
     let z = (residual / left / scale).to_f64();
     row.left_out_log_density = Some(law.log_density(z) - float::ln(scale.to_f64())).filter(|d| d.is_finite());
-    row.left_out_tail = Some(law.cdf(z));
+    row.left_out_tail = Some(law.cdf(z)).filter(|p| p.is_finite());
     Some(row)
 }

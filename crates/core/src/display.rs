@@ -212,6 +212,17 @@ pub fn number(value: f64, significant: usize) -> String {
     alone(&Rounded::new(value, last_place(value, significant)), "")
 }
 
+/// A number as shortly as it can be written, with an exponent where it is very large or very small; for sentences that
+/// repeat what was given.
+pub fn as_given(value: f64) -> String {
+    let size = value.abs();
+    if value.is_finite() && size != 0.0 && !(1e-6..1e15).contains(&size) {
+        format!("{value:e}")
+    } else {
+        format!("{value}")
+    }
+}
+
 /// A number to the decimal place of an uncertainty that is shown to two significant digits.
 pub fn to_match(value: f64, like: f64) -> String {
     if value.is_finite() { alone(&rounded_like(value, like), "") } else { not_finite(value).to_owned() }

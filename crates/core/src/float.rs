@@ -3,6 +3,14 @@
 //! The standard library's own functions differ in the last bit between targets; these give the same bits natively and
 //! in every browser. Accuracy: below one unit in the last place for those used here.
 
+/// The power of two with the exponent of `x`; 1 for zero and what is not finite. Ratios to it carry no rounding.
+pub fn power_of_two_of(x: f64) -> f64 {
+    if !x.is_normal() {
+        return 1.0;
+    }
+    f64::from_bits(x.to_bits() & 0x7ff0_0000_0000_0000)
+}
+
 /// The square root, correctly rounded; NaN below zero.
 pub fn sqrt(x: f64) -> f64 {
     libm::sqrt(x)

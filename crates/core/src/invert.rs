@@ -15,8 +15,8 @@ use crate::float;
 /// Places scanned for solutions and maxima.
 const SCAN: usize = 256;
 
-/// Points of a density that is handed on for drawing.
-const DRAWN: usize = 81;
+/// Steps of each half of the points of a density that is handed on for drawing.
+const EVEN: usize = 40;
 
 /// A solution of f(x) = target, with the slope there.
 #[derive(Clone, Copy, Debug)]
@@ -196,12 +196,13 @@ impl ValueDensity {
     }
 
     /// Everything that is reported of the value.
-    pub fn describe(&self, coverage: f64) -> Described {
+    pub fn describe(&self, coverage: f64, log_density: &dyn Fn(f64) -> f64) -> Described {
         let d = &self.density;
         let tail = (1.0 - coverage) / 2.0;
         let samples = d.samples();
         let top = samples.iter().map(|s| s.1).fold(0.0, f64::max);
         let (modes, valleys) = modes(d, &samples, top);
+        let greatest = modes.iter().map(|&m| log_density(m)).fold(f64::NEG_INFINITY, f64::max);
         let median = d.quantile(0.5);
         let mean_shift = d.moment(median, 1);
         let second = d.moment(median, 2);
@@ -217,7 +218,10 @@ impl ValueDensity {
             highest_density: highest_density(d, &samples, &modes, &valleys, self.extent, top, coverage),
             masses: cuts.windows(2).map(|w| d.cdf(w[1]) - d.cdf(w[0])).collect(),
             modes: modes.iter().copied().filter(|m| *m > self.extent[0] && *m < self.extent[1]).collect(),
-            at_ends: [d.value(self.extent[0]) / top, d.value(self.extent[1]) / top],
+            at_ends: self.extent.map(|end| {
+                let share = float::exp(log_density(end) - greatest);
+                if share.is_finite() { share } else { 0.0 }
+            }),
             log_mean: self.log_scale + float::ln(d.mass() / (self.extent[1] - self.extent[0])),
             drawn: drawn(d),
         }
@@ -238,8 +242,7 @@ fn scaled<'a>(log_density: &'a dyn Fn(f64) -> f64, log_scale: f64) -> impl Fn(f6
 
 /// Edges of the first panels: evenly spaced, and around each seed at distances that grow by a constant factor.
 fn edges(low: f64, high: f64, seeds: impl Iterator<Item = Seed>) -> Vec<f64> {
-    const EVEN: usize = 16;
-    let mut edges: Vec<f64> = (0..=EVEN).map(|k| place(low, high, k * (SCAN / EVEN))).collect();
+    let mut edges: Vec<f64> = (0..=SCAN).step_by(SCAN / 16).map(|k| place(low, high, k)).collect();
     for seed in seeds {
         edges.push(seed.x);
         let mut distance = 2.0 * seed.width;
@@ -414,10 +417,15 @@ fn crossing(d: &Piecewise, samples: &[(f64, f64)], a: f64, b: f64, level: f64) -
     0.5 * (low + high)
 }
 
-/// Points of the normalised density over the part that matters.
+/// Points of the normalised density over the part that matters: one half evenly spaced, so that long tails are seen,
+/// one half with equal mass between them, so that a narrow peak is.
 fn drawn(d: &Piecewise) -> (Vec<f64>, Vec<f64>) {
     let (low, high) = (d.quantile(5e-4), d.quantile(1.0 - 5e-4));
-    let x: Vec<f64> = (0..DRAWN).map(|k| low + (high - low) * k as f64 / (DRAWN - 1) as f64).collect();
+    let even = (0..=EVEN).map(|k| low + (high - low) * k as f64 / EVEN as f64);
+    let by_mass = (1..EVEN).map(|k| d.quantile(k as f64 / EVEN as f64));
+    let mut x: Vec<f64> = even.chain(by_mass).collect();
+    x.sort_by(f64::total_cmp);
+    x.dedup();
     let y = x.iter().map(|&x| d.value(x) / d.mass()).collect();
     (x, y)
 }

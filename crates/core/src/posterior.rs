@@ -21,6 +21,9 @@ use crate::problem::Problem;
 use crate::shape::Shape;
 use nalgebra::{DMatrix, DVector};
 
+/// Coefficients and their scales up to this size still have squares.
+const LARGEST_COEFFICIENT: f64 = 1e150;
+
 const LN_TWO_PI: f64 = 1.837_877_066_409_345_3;
 
 /// One component of the posterior.
@@ -118,7 +121,10 @@ pub fn fit(
     let factor = Factor::new(stacked).map_err(|d| dependent(&d, shape, rows))?;
     let location = factor.solution();
     let inverse_triangle = factor.inverse_triangle();
-    if location.iter().chain(inverse_triangle.iter()).any(|e| !e.is_finite()) {
+    let (law, scale, stated_sum) = scale_of_noise(n, p, sigma, prior, factor.rest);
+    let root = inverse_triangle.map(|e| e * scale);
+    let all = location.iter().chain(inverse_triangle.iter()).chain(root.iter());
+    if !all.into_iter().all(|e| e.to_f64().abs() <= LARGEST_COEFFICIENT) {
         return Err(Problem::error(
             "out_of_range",
             "points",
@@ -126,10 +132,9 @@ pub fn fit(
         ));
     }
     let residual_sum_of_squares = residual_sum(rows, design, &location, &deviations);
-    let (law, scale, stated_sum) = scale_of_noise(n, p, sigma, prior, factor.rest);
     let component = Component {
         weight: 1.0,
-        root: inverse_triangle.map(|e| e * scale),
+        root,
         location,
         law,
         noise: match sigma {

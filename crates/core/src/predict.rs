@@ -120,10 +120,22 @@ impl Mixture {
 
     /// ln of the density at y.
     pub fn log_density(&self, y: Dd) -> f64 {
+        self.log_density_over(y, 1.0)
+    }
+
+    /// ln of the density at y times `unit`. With a unit near the scales only ratios enter a logarithm, so that other
+    /// units of measurement by a power of two change no bit.
+    pub fn log_density_over(&self, y: Dd, unit: f64) -> f64 {
+        if let [part] = self.parts.as_slice() {
+            let z = (y - part.location).to_f64() / part.scale;
+            return part.law.log_density(z) - float::ln(part.scale / unit);
+        }
         let logs: Vec<f64> = self
             .parts
             .iter()
-            .map(|p| float::ln(p.weight) + p.law.log_density((y - p.location).to_f64() / p.scale) - float::ln(p.scale))
+            .map(|p| {
+                float::ln(p.weight) + p.law.log_density((y - p.location).to_f64() / p.scale) - float::ln(p.scale / unit)
+            })
             .collect();
         let top = logs.iter().copied().fold(f64::NEG_INFINITY, f64::max);
         if !top.is_finite() {

@@ -154,9 +154,12 @@ impl Reader<'_> {
         let curve = |x: f64| (self.predictor.mean(x, influences) - mean).to_f64();
         let (found, near) = solutions(extent[0], extent[1], &curve, &gap);
         value.solutions = found.iter().map(|s| self.linearised(*s, influences, new)).collect();
+        value.solutions.retain(|s| s.slope != 0.0 && is_usable(s.slope) && is_usable(s.scale));
+        let unit = scale_of(&self.predictor.indication(0.5 * (extent[0] + extent[1]), influences, new));
+        let unit = float::power_of_two_of(unit);
         let log_density = |x: f64| {
             let indication = self.predictor.indication(x, influences, new);
-            indication.log_density(mean) + known_log_density(reading.known, x)
+            indication.log_density_over(mean, unit) + known_log_density(reading.known, x)
         };
         if found.iter().any(|s| !(self.predictor.indication(s.x, influences, new).parts.iter().all(|p| p.scale > 0.0)))
         {
@@ -177,7 +180,8 @@ impl Reader<'_> {
             value.flags.push("unattainable");
             return;
         };
-        let described = density.describe(self.scope.coverage);
+        let mut described = density.describe(self.scope.coverage, &log_density);
+        described.log_mean -= float::ln(unit);
         self.finish(described, extent, value);
         self.check_extent(&density, extent, &log_density, value);
         if found.is_empty() {
@@ -269,7 +273,8 @@ impl Reader<'_> {
         let known = reading.known.unwrap_or(KnownValue { mean: centre, standard_uncertainty: 0.0 });
         let low = (centre - reach).min(known.mean - 10.0 * known.standard_uncertainty).max(self.scope.hard_limits.0);
         let high = (centre + reach).max(known.mean + 10.0 * known.standard_uncertainty).min(self.scope.hard_limits.1);
-        let log_density = |x: f64| mixture.log_density(Dd::from(x)) + known_log_density(reading.known, x);
+        let unit = float::power_of_two_of(scale_of(&mixture));
+        let log_density = |x: f64| mixture.log_density_over(Dd::from(x), unit) + known_log_density(reading.known, x);
         let seeds =
             [Seed { x: centre, width: scale_of(&mixture) }, Seed { x: known.mean, width: known.standard_uncertainty }];
         let Some(density) = (high > low).then(|| ValueDensity::new([low, high], &log_density, &seeds)).flatten() else {
@@ -281,7 +286,7 @@ impl Reader<'_> {
             return;
         };
         let cut = reading.known.is_some() || low == self.scope.hard_limits.0 || high == self.scope.hard_limits.1;
-        let mut described = density.describe(self.scope.coverage);
+        let mut described = density.describe(self.scope.coverage, &log_density);
         if !cut {
             // Uncut and with nothing else known the closed form holds.
             described.median = mixture.median();
@@ -306,6 +311,15 @@ impl Reader<'_> {
     /// Fills in the value from its description.
     fn finish(&self, described: Described, extent: [f64; 2], value: &mut Value) {
         let [low, high] = described.interval;
+        let sound = [described.mean, described.standard_deviation, described.median, low, high];
+        if !sound.into_iter().all(is_usable) {
+            value.messages.push(Problem::error(
+                "value_out_of_range",
+                "indications",
+                "The value comes out too large or too uncertain to compute with: check the reading, its unit and the points.",
+            ));
+            return;
+        }
         value.value = Some(ValueReport {
             median: described.median,
             mean: Some(described.mean),

@@ -67,7 +67,8 @@ impl Document {
         if let Some(problem) = misfit::other_schema(&self.value, SCHEMA) {
             return Err(problem);
         }
-        serde_path_to_error::deserialize(&self.value).map_err(|error| misfit::wrong_kind(&self.value, &error))
+        serde_path_to_error::deserialize(without_unknown(&self.value))
+            .map_err(|error| misfit::wrong_kind(&self.value, &error))
     }
 
     /// The canonical text (RFC 8785).
@@ -78,6 +79,18 @@ impl Document {
     /// The digest of the canonical text: `sha256:…`.
     pub fn digest(&self) -> String {
         sha256(self.canonical.as_bytes())
+    }
+}
+
+/// The value without the fields that are `null`, which means not known, as an absent field does. A `null` in a list
+/// keeps its place.
+fn without_unknown(value: &Value) -> Value {
+    match value {
+        Value::Object(fields) => Value::Object(
+            fields.iter().filter(|(_, v)| !v.is_null()).map(|(k, v)| (k.clone(), without_unknown(v))).collect(),
+        ),
+        Value::Array(items) => Value::Array(items.iter().map(without_unknown).collect()),
+        other => other.clone(),
     }
 }
 
