@@ -11,7 +11,7 @@ export function Answers(props) {
   const { report } = props.state;
   return (
     <section class="answers" aria-label="Answers">
-      <div class="answer reading">
+      <div class={`answer reading${props.state.answer.value ? '' : ' empty'}`}>
         <h2>
           <label for="reading">Reading → value</label>
         </h2>
@@ -116,9 +116,9 @@ export function ReadingWords({ core, state, dispatch }) {
         </span>
       )}
       {reservations.map((sentence) => (
-        <strong key={sentence} class="reservation">
-          {sentence}{' '}
-        </strong>
+        <span key={sentence} class="reservation">
+          ! {sentence}{' '}
+        </span>
       ))}
       {CONDITIONS}
       {answer.value.budget.length > 0 && (

@@ -2,6 +2,7 @@
 
 /** @import { Parts } from './store.js' */
 import { PanelFrame } from './panel.jsx';
+import { freedomFigure } from './words.js';
 
 /** @param {Parts & { onClose: () => void }} props */
 export function BudgetPanel({ core, state, onClose }) {
@@ -16,8 +17,8 @@ export function BudgetPanel({ core, state, onClose }) {
           <p class="lead">{value.value.display}</p>
           {value.linearised && (
             <p>
-              By the law of propagation: {core.format_value(value.linearised.estimate, value.linearised.scale, unit)} with the standard
-              uncertainty u.
+              By the law of propagation: {core.format_to(value.linearised.estimate, value.linearised.scale)} {unit}, u ={' '}
+              {figure(value.linearised.scale)} {unit}
             </p>
           )}
           <div class="scroll" tabIndex={0} role="region" aria-label="Budget">
@@ -43,7 +44,7 @@ export function BudgetPanel({ core, state, onClose }) {
                     <td>
                       {figure(line.standard_uncertainty)} {line.unit}
                     </td>
-                    <td>{line.degrees_of_freedom === null ? '∞' : core.format_number(line.degrees_of_freedom, 3)}</td>
+                    <td>{freedomFigure(line.degrees_of_freedom)}</td>
                     <td>{figure(line.sensitivity)}</td>
                     <td>{figure(line.contribution)}</td>
                     <td>{core.format_number(line.share_of_variance * 100, 2)} %</td>

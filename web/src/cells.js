@@ -3,6 +3,8 @@
 /** @import { Core, Cell, Point, Unread, Visit } from './types.js' */
 import { cellValue, columnsOf, pointsOf, typedText, valueText } from './visit.js';
 
+const EVIDENCE = 500;
+
 /**
  * @typedef {{ values: number[]|null, alternatives: number[][]|null, sentence: string|null }} Pieces
  * values where everything could be read; alternatives where the text can be read in two ways; a sentence where it cannot be read
@@ -25,6 +27,29 @@ export function readPieces(core, text) {
   if (cells.some((cell) => cell.alternatives.length === 2))
     return { values: null, alternatives: [readings(cells, 0), readings(cells, 1)], sentence: null };
   return { values: readings(cells, 0), alternatives: null, sentence: null };
+}
+
+/**
+ * The same for a cell of a column: what reads in two ways is read as the other rows of the column were, where they
+ * agree about what the mark means.
+ * @param {Core} core
+ * @param {Visit} visit
+ * @param {string} column
+ * @param {string} text
+ * @returns {Pieces}
+ */
+export function readInColumn(core, visit, column, text) {
+  const pieces = readPieces(core, text);
+  const mark = onlyMark(text);
+  if (!pieces.alternatives || !mark) return pieces;
+  const uses = new Set();
+  for (const point of pointsOf(visit).slice(-EVIDENCE)) {
+    const typed = typedText(point, column);
+    if (typed !== null && onlyMark(typed) === mark) uses.add(useOfMark(core, typed, cellValue(point, column)));
+  }
+  uses.delete(null);
+  if (uses.size !== 1) return pieces;
+  return { values: pieces.alternatives[uses.has('decimal') ? 0 : 1], alternatives: null, sentence: null };
 }
 
 /**
@@ -52,7 +77,13 @@ export function shownText(core, point, column) {
   const text = typedText(point, column);
   if (text === null) return valueText(value);
   if (value === null) return text;
-  return valueText(toCell(readPieces(core, text).values, column)) === valueText(value) ? text : valueText(value);
+  // A decimal point is how numbers are written here, so such a text stands also where it could be read in another way.
+  const asWritten = text
+    .split(';')
+    .map((piece) => String(Number(piece.trim())))
+    .join('; ');
+  const same = asWritten === valueText(value) || valueText(toCell(readPieces(core, text).values, column)) === valueText(value);
+  return same ? text : valueText(value);
 }
 
 /**
@@ -92,6 +123,36 @@ export function firstUnread(core, visit) {
     return { row: index + 1, sentence };
   }
   return null;
+}
+
+/**
+ * The comma or point in a text, where it has but one kind of them.
+ * @param {string} text
+ */
+function onlyMark(text) {
+  const marks = new Set(text.match(/[.,]/g));
+  return marks.size === 1 ? [...marks][0] : null;
+}
+
+/**
+ * What the mark in a typed cell was taken for, from the value that was kept.
+ * @param {Core} core
+ * @param {string} typed
+ * @param {number|number[]|null} value
+ * @returns {'decimal'|'grouping'|null}
+ */
+function useOfMark(core, typed, value) {
+  if (value === null) return null;
+  const { values, alternatives } = readPieces(core, typed);
+  const kept = valueText(value);
+  if (alternatives)
+    return valueText(toCell(alternatives[0], 'indication')) === kept
+      ? 'decimal'
+      : valueText(toCell(alternatives[1], 'indication')) === kept
+        ? 'grouping'
+        : null;
+  const plain = typed.split(';').map((piece) => Number(piece.trim().replace(',', '.')));
+  return values && plain.join() === values.join() ? 'decimal' : 'grouping';
 }
 
 /**

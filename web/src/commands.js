@@ -4,7 +4,7 @@
 /** @import { Store } from './store.js' */
 import headerTank from '../demo/header-tank.json';
 import transmitter from '../demo/transmitter.json';
-import { readPieces, toCell } from './cells.js';
+import { readInColumn, toCell } from './cells.js';
 import { chooseFile, fileName, readFile, saveFile } from './files.js';
 import { ownTexts } from './own.js';
 import { refusal } from './store.js';
@@ -201,7 +201,12 @@ export function fillDown(event, core, store) {
   lines.forEach((line, at) => {
     if (line === '') return;
     const index = Math.min(first + at, pointsOf(next).length);
-    next = withPoint(next, index, cellChange(pointsOf(next)[index], column, line, toCell(readPieces(core, line).values, column)), entering);
+    next = withPoint(
+      next,
+      index,
+      cellChange(pointsOf(next)[index], column, line, toCell(readInColumn(core, next, column, line).values, column)),
+      entering,
+    );
   });
   store.dispatch({ type: 'edit', visit: next, what: `${lines.length} values pasted` });
 }

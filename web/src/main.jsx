@@ -2,7 +2,7 @@
 
 /** @import { Core, Opened, State, Texts, Visit } from './types.js' */
 /** @import { Store } from './store.js' */
-import { render } from 'preact';
+import { options, render } from 'preact';
 import { StartError, startCore } from './bindings.js';
 import { today } from './commands.js';
 import { findDrafts, keepDraft, keptMode } from './drafts.js';
@@ -25,6 +25,8 @@ async function start() {
   root.dataset.mode = keptMode();
   const texts = ownTexts();
   const place = mount();
+  // Drawn at once: the next cell is there when Enter moves on to it, and no key typed meanwhile is lost.
+  options.debounceRendering = (draw) => draw();
   try {
     const core = await startCore(texts);
     /** @type {any} */ (globalThis).bandleaf = core;

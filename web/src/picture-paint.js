@@ -344,6 +344,7 @@ function shadow(context, line, frame, inks) {
 function label(context, scene, line, frame, inks) {
   const bottom = frame.height - MARGIN.bottom;
   const [x, y] = pixel(frame, line.x, line.y);
+  if (line.x < scene.x[0] || line.x > scene.x[1]) return;
   context.font = fontOf('bold');
   const width = context.measureText(line.label).width;
   const toTheRight = x + width + 14 < frame.width - MARGIN.right;

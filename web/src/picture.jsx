@@ -215,7 +215,8 @@ function afterKey(event, place, first, last, marks) {
  * @param {Parts['state']} state
  * @param {number} place
  */
-function readOffWords(core, store, { visit, report, drawn }, place) {
+function readOffWords(core, store, state, place) {
+  const { visit, report, drawn } = state;
   const [, estimate, , lo, hi, newLo, newHi, nominal] = store.curve(place, place, 1);
   const units = report?.units;
   if (estimate === undefined || !units || !drawn) return null;
@@ -223,9 +224,9 @@ function readOffWords(core, store, { visit, report, drawn }, place) {
   const half = (hi - lo) / 2;
   const indication = core.format_interval(newLo, newHi, units.response);
   const curve = core.format_value(estimate, half, units.response);
-  if (Number.isNaN(nominal)) return `at ${at}: ${curve}; a new one ${indication}`;
+  if (viewOf(state) !== 'error') return `at ${at}: ${curve}; a new one ${indication}`;
   const error = core.format_value(asError(orientationOf(visit), estimate, nominal), half, units.response);
-  return `at ${at}: error ${error}; curve ${curve}, a new one ${indication}`;
+  return `at ${at}: error ${error}; a new indication ${indication}`;
 }
 
 /**

@@ -3,7 +3,7 @@
 /** @import { Parts } from './store.js' */
 /** @import { Point, PointReport, Problem } from './types.js' */
 import { useMemo, useRef, useState } from 'preact/hooks';
-import { readPieces, rowTrouble, shownText, toCell } from './cells.js';
+import { readInColumn, rowTrouble, shownText, toCell } from './cells.js';
 import { chooseAndOpen, fillDown } from './commands.js';
 import { TwoWays } from './fields.jsx';
 import { cellChange, columnsOf, pointsOf, withPoint } from './visit.js';
@@ -276,10 +276,11 @@ function grouped(rows, messages) {
  * @param {string} text
  */
 function commitText(core, store, index, column, text) {
-  const point = pointsOf(store.state().visit)[index];
+  const { visit } = store.state();
+  const point = pointsOf(visit)[index];
   if (text.trim() === '' && !point) return;
   if (text === shownText(core, point, column)) return;
-  commit(store, index, column, text, readPieces(core, text).values);
+  commit(store, index, column, text, readInColumn(core, visit, column, text).values);
 }
 
 /**
@@ -302,7 +303,8 @@ function commit(store, index, column, text, values) {
 }
 
 /**
- * Arrow keys move between cells, sideways only from the ends of the text; Enter goes to the next cell to be filled.
+ * Arrow keys move between cells, sideways only from the ends of the text, and from the last to the buttons of the row;
+ * Enter goes to the next cell to be filled, Tab from the last cell to the next row.
  * @param {KeyboardEvent} event
  * @param {string[]} columns
  */
@@ -313,19 +315,23 @@ function navigate(event, columns) {
   const column = columns.indexOf(cell.dataset.column ?? '');
   const atStart = cell.selectionStart === 0 && (cell.selectionEnd === 0 || cell.selectionEnd === cell.value.length);
   const atEnd = cell.selectionEnd === cell.value.length && (cell.selectionStart === 0 || cell.selectionStart === cell.value.length);
+  const isLast = column === columns.length - 1;
+  const isBlank = cell.closest('tr')?.classList.contains('blank') ?? false;
   const moves = /** @type {Record<string, [number, number]|null>} */ ({
     ArrowUp: [row - 1, column],
     ArrowDown: [row + 1, column],
     ArrowLeft: atStart && column > 0 ? [row, column - 1] : null,
-    ArrowRight: atEnd && column < columns.length - 1 ? [row, column + 1] : null,
+    ArrowRight: atEnd && !isLast ? [row, column + 1] : null,
     Enter: event.shiftKey ? [row - 1, column] : afterEnter(cell, row, column, columns),
+    Tab: isLast && !event.shiftKey && !(isBlank && cell.value === '') ? [row + 1, 0] : null,
   });
+  if (event.key === 'ArrowRight' && atEnd && isLast) cell.closest('tr')?.querySelector('button')?.focus();
   const to = moves[event.key];
   if (!to) return;
   event.preventDefault();
   const table = cell.closest('table');
   cell.blur();
-  requestAnimationFrame(() => requestAnimationFrame(() => focusCell(table, to[0], columns[to[1]])));
+  cellAt(table, to[0], columns[to[1]])?.focus();
 }
 
 /**
@@ -342,15 +348,6 @@ function afterEnter(cell, row, column, columns) {
   }
   const below = cellAt(table, row + 1, 'reference');
   return [row + 1, below && below.value !== '' ? column : 0];
-}
-
-/**
- * @param {Element|null} table
- * @param {number} row
- * @param {string} column
- */
-function focusCell(table, row, column) {
-  cellAt(table, row, column)?.focus();
 }
 
 /**

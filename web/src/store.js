@@ -3,7 +3,7 @@
 
 /** @import { Helper } from './helper.js' */
 /** @import { Action, Answer, Asked, Core, Notice, Opened, State, Visit } from './types.js' */
-import { readPieces } from './cells.js';
+import { readInColumn, readPieces } from './cells.js';
 import { follow } from './following.js';
 import { influencesOf, pointsOf } from './visit.js';
 
@@ -278,7 +278,7 @@ function stepped(state, steps, from, to) {
  * @returns {{ problem: string|null, alternatives: number[][]|null, reading: { indications: number[], influences: Record<string, number> }|null }}
  */
 function question(core, { visit, report, reading }) {
-  const { values, alternatives, sentence } = readPieces(core, reading.text);
+  const { values, alternatives, sentence } = readInColumn(core, visit, 'indication', reading.text);
   const refused = (/** @type {string|null} */ problem) => ({ problem, alternatives, reading: null });
   if (!values) return refused(sentence);
   /** @type {Record<string, number>} */

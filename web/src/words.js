@@ -103,9 +103,14 @@ export function noiseWords(core, report) {
 
 /** @param {Report} report */
 export function freedomWords(report) {
-  const freedom = report.fit?.degrees_of_freedom;
-  if (freedom === null || freedom === undefined) return 'degrees of freedom ∞';
-  return `${freedom === 1 ? '1 degree' : `${Number(freedom.toPrecision(6))} degrees`} of freedom`;
+  const freedom = report.fit?.degrees_of_freedom ?? null;
+  if (freedom === null) return 'degrees of freedom ∞';
+  return freedom === 1 ? '1 degree of freedom' : `${freedomFigure(freedom)} degrees of freedom`;
+}
+
+/** Degrees of freedom, a whole number as such. @param {number|null|undefined} freedom */
+export function freedomFigure(freedom) {
+  return freedom === null || freedom === undefined ? '∞' : String(Number(freedom.toPrecision(6)));
 }
 
 /**
@@ -118,7 +123,7 @@ export function coverageWords(core, report, value) {
   const factor = value.value?.coverage_factor;
   const freedom = report.fit?.degrees_of_freedom;
   const k = factor === null || factor === undefined ? '' : `, k = ${core.format_number(factor, 3)}`;
-  const nu = freedom === null || freedom === undefined ? ', ν = ∞' : `, ν = ${Number(freedom.toPrecision(6))}`;
+  const nu = `, ν = ${freedomFigure(freedom)}`;
   return `${percent(report.coverage)}${k}${nu}`;
 }
 
