@@ -58,6 +58,7 @@ struct Plan {
     out_low: f64,
     out_high: f64,
     noise: f64,
+    per_point: bool,
 }
 
 impl Plan {
@@ -79,7 +80,7 @@ impl Plan {
             _ => (json!({"kind": "linear", "range": [10, 0]}), 10.0, 0.0),
         };
         let noise = rounded((out_high - out_low).abs() * random.between(0.0005, 0.01)).max(0.001);
-        Plan { terms, columns, orientation, nominal, low, high, out_low, out_high, noise }
+        Plan { terms, columns, orientation, nominal, low, high, out_low, out_high, noise, per_point: index % 7 < 2 }
     }
 
     /// Indication of an instrument that is a little off its nominal characteristic, without noise.
@@ -114,11 +115,10 @@ impl Plan {
     fn points(&self, random: &mut SplitMix64) -> Vec<Value> {
         let count = self.columns as u64 + 3 + random.below(8);
         let states = random.chance(0.15);
-        let per_point = random.chance(0.3);
         let mut points: Vec<Value> = (0..count)
             .map(|i| {
                 let x = rounded(self.low + (self.high - self.low) * i as f64 / (count - 1) as f64);
-                self.point(x, per_point, random)
+                self.point(x, random)
             })
             .collect();
         if states {
@@ -139,7 +139,7 @@ impl Plan {
         points
     }
 
-    fn point(&self, x: f64, per_point: bool, random: &mut SplitMix64) -> Value {
+    fn point(&self, x: f64, random: &mut SplitMix64) -> Value {
         let one = |random: &mut SplitMix64| rounded(self.shown(x) + self.noise * random.normal());
         let raw = random.chance(0.2);
         let indication = if raw {
@@ -156,7 +156,7 @@ impl Plan {
         if !raw && random.chance(0.15) {
             point["repeats"] = json!(2 + random.below(9));
         }
-        if per_point {
+        if self.per_point {
             point["indication_uncertainty"] = json!(rounded(self.noise * random.between(0.5, 2.0)).max(0.001));
         }
         if random.chance(0.2) {
@@ -168,6 +168,7 @@ impl Plan {
     fn model(&self, index: u64, random: &mut SplitMix64) -> Value {
         let mut noise = match index % 4 {
             0 | 1 => json!({"kind": "unknown"}),
+            2 if self.per_point && index % 8 == 2 => json!({"kind": "known", "standard_deviation": 0}),
             2 => json!({"kind": "known", "standard_deviation": self.noise}),
             _ => {
                 json!({"kind": "stated", "standard_deviation": self.noise, "degrees_of_freedom": 4.5})
@@ -351,6 +352,39 @@ mod tests {
         for (index, json) in visits(COUNT).into_iter().enumerate() {
             let read: Result<bandleaf_core::visit::Visit, _> = serde_json::from_value(json);
             assert!(read.is_ok(), "{index}: {read:?}");
+        }
+    }
+
+    #[test]
+    fn every_kind_is_among_the_visits_of_the_comparison() {
+        let all = visits(COUNT).iter().map(Value::to_string).collect::<Vec<_>>();
+        for kind in [
+            "\"kind\":\"unknown\"",
+            "\"kind\":\"known\",\"standard_deviation\":0}",
+            "\"kind\":\"stated\"",
+            "\"rho\":0.5",
+            "\"rho\":\"integrated\"",
+            "\"known_before\":[]",
+            "\"kind\":\"shrinkage\",\"precision\":0.25",
+            "\"intercept\":\"shrunk\"",
+            "\"kind\":\"coefficients\"",
+            "\"kind\":\"conjugate\"",
+            "\"kind\":\"values\"",
+            "\"kind\":\"carried\"",
+            "reference_from_indication",
+            "correction_from_indication",
+            "\"kind\":\"square_root\"",
+            "\"degree\":12",
+            "*temperature",
+            "\"set_aside\":\"",
+            "\"state\":\"as_left\"",
+            "\"repeats\":2",
+            "\"hard_limits\":[0,null]",
+            "\"known\":{\"mean\"",
+            "\"resolution\":0.01",
+        ] {
+            let count = all.iter().filter(|text| text.contains(kind)).count();
+            assert!(count >= 3, "{kind} is in {count} visits");
         }
     }
 }

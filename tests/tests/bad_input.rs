@@ -114,11 +114,11 @@ fn a_term_that_is_infinite_at_a_point() {
     for (terms, name) in [(json!(["1", "ln(x)"]), "ln(x)"), (json!(["1", "x", "1/x"]), "1/x")] {
         let mut body = with("/points/2/reference", json!(0));
         body["model"]["terms"] = terms;
-        refused(body, "points[2]", &["3", name]);
+        refused(body, "points[2].reference", &["3", name]);
     }
     let mut negative = with("/points/0/reference", json!(-1));
     negative["model"]["terms"] = json!(["1", "sqrt(x)"]);
-    refused(negative, "points[0]", &["1", "sqrt(x)"]);
+    refused(negative, "points[0].reference", &["1", "sqrt(x)"]);
 }
 
 #[test]
