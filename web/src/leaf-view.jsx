@@ -83,17 +83,17 @@ function Check({ opened, digest }) {
 
 /** @param {Parts} props */
 export function LeafStrip({ state, dispatch }) {
-  const { opened, origin, visit, saved, past } = state;
+  const { opened, visit, saved, past } = state;
   if (!opened) return null;
-  const changed = past.length > 0 && visit !== saved && origin !== '';
+  const changed = past.length > 0 && visit !== saved;
   return (
-    <p class="leaf-strip">
+    <section class="leaf-strip" aria-label="Leaf">
       <span>
         Leaf: {outcomeWords(opened.outcome)}.{changed && ' The sheet has been changed since; the file has not.'}
       </span>
       <button type="button" class="change" onClick={() => dispatch({ type: 'show', change: { stage: 'leaf' } })}>
         reader's view
       </button>
-    </p>
+    </section>
   );
 }

@@ -25,12 +25,12 @@ export function PanelFrame({ title, onClose, children, wide, low }) {
         if (event.key === 'Escape') onClose();
       }}
     >
-      <header>
+      <div class="panel-head">
         <h2 tabIndex={-1}>{title}</h2>
         <button type="button" class="quiet" onClick={onClose}>
           Close
         </button>
-      </header>
+      </div>
       <div class="panel-body">{children}</div>
     </section>
   );

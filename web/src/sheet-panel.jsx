@@ -2,9 +2,11 @@
 
 import { chooseAndOpen, DEMOS, loadDemo, newSheet, replaceBy, saveCurve, saveReport, saveVisit } from './commands.js';
 /** @import { Parts } from './store.js' */
+/** @import { Draft } from './types.js' */
 import { dropDraft, keepMode } from './drafts.js';
 import { Choice } from './fields.jsx';
 import { PanelFrame } from './panel.jsx';
+import { pointsOf } from './visit.js';
 import { CAUTION } from './words.js';
 
 /** @param {Parts & { onClose: () => void }} props */
@@ -78,12 +80,9 @@ export function Drafts({ core, store, state, dispatch, onClose }) {
     dropDraft(key);
     dispatch({ type: 'show', change: { drafts: state.drafts.filter((draft) => draft.key !== key) } });
   };
-  const resume = (/** @type {import('./types.js').Draft} */ draft) => {
+  const resume = (/** @type {Draft} */ draft) => {
     onClose();
-    replaceBy(core, store, draft.visit, 'draft taken up again', {
-      level: 'note',
-      sentence: 'A draft that this browser had kept. It is not saved: save the leaf when it is done.',
-    });
+    takeUp(core, store, draft);
   };
   return (
     <>
@@ -108,7 +107,45 @@ export function Drafts({ core, store, state, dispatch, onClose }) {
   );
 }
 
-/** @param {import('./types.js').Draft} draft */
+/**
+ * On an empty sheet, what was there when the last tab closed.
+ * @param {Parts} props
+ */
+export function DraftOffer({ core, store, state, dispatch }) {
+  const { drafts, past, visit, opened } = state;
+  const newest = drafts[0];
+  if (!newest || past.length > 0 || opened || pointsOf(visit).length > 0) return null;
+  return (
+    <section class="leaf-strip" aria-label="Draft">
+      <span>
+        This browser has kept a draft: {newest.title}, {draftWords(newest)}.
+      </span>
+      <button type="button" class="small" onClick={() => takeUp(core, store, newest)}>
+        Take it up
+      </button>
+      {drafts.length > 1 && (
+        <button type="button" class="change" onClick={() => dispatch({ type: 'panel', panel: { name: 'sheet' } })}>
+          all {drafts.length}
+        </button>
+      )}
+    </section>
+  );
+}
+
+/**
+ * @param {Parts['core']} core
+ * @param {Parts['store']} store
+ * @param {Draft} draft
+ */
+function takeUp(core, store, draft) {
+  const notice = /** @type {const} */ ({
+    level: 'note',
+    sentence: 'A draft that this browser had kept. It is not saved: save the leaf when it is done.',
+  });
+  replaceBy(core, store, draft.visit, 'draft taken up again', notice);
+}
+
+/** @param {Draft} draft */
 function draftWords(draft) {
   const count = draft.visit.points?.length ?? 0;
   const when = new Intl.DateTimeFormat('en-GB', { dateStyle: 'medium', timeStyle: 'short' }).format(new Date(draft.at));

@@ -20,7 +20,7 @@ import { Picture } from './picture.jsx';
 import { PointPanel } from './point-panel.jsx';
 import { Points } from './points.jsx';
 import { ShapePanel } from './shape-panel.jsx';
-import { SheetPanel } from './sheet-panel.jsx';
+import { DraftOffer, SheetPanel } from './sheet-panel.jsx';
 import { StateLine } from './state-line.jsx';
 import { CAUTION, coverageWords } from './words.js';
 
@@ -43,6 +43,7 @@ export function Sheet({ core, store }) {
             <Heading {...parts} />
             <LeafStrip {...parts} />
             <StateLine {...parts} />
+            <DraftOffer {...parts} />
           </div>
           <main class="work">
             <Points {...parts} />
