@@ -3,7 +3,7 @@
 import { chooseAndOpen, DEMOS, loadDemo, newSheet, replaceBy, saveCurve, saveReport, saveVisit } from './commands.js';
 /** @import { Parts } from './store.js' */
 /** @import { Draft } from './types.js' */
-import { dropDraft, keepMode } from './drafts.js';
+import { dropDraft, keepDraft, keepMode } from './drafts.js';
 import { Choice } from './fields.jsx';
 import { PanelFrame } from './panel.jsx';
 import { pointsOf } from './visit.js';
@@ -143,6 +143,10 @@ function takeUp(core, store, draft) {
     sentence: 'A draft that this browser had kept. It is not saved: save the leaf when it is done.',
   });
   replaceBy(core, store, draft.visit, 'draft taken up again', notice);
+  // It goes on under this tab's name, so the old entry can go.
+  if (keepDraft(store.state()) !== null) return;
+  dropDraft(draft.key);
+  store.dispatch({ type: 'show', change: { drafts: store.state().drafts.filter((other) => other.key !== draft.key) } });
 }
 
 /** @param {Draft} draft */
