@@ -1,7 +1,7 @@
 // Typed text to numbers, by the core's own rules for one cell; several repeats are written "151; 150; 151".
 
 /** @import { Core, Cell, Point, Unread, Visit } from './types.js' */
-import { cellValue, columnsOf, pointsOf, typedText, valueText } from './visit.js';
+import { cellChange, cellValue, columnsOf, pointsOf, typedText, valueText } from './visit.js';
 
 const EVIDENCE = 500;
 
@@ -65,6 +65,26 @@ export function toCell(values, column) {
 }
 
 /**
+ * What a person said of one cell that reads in two ways, for every cell of the column that waits for the same answer.
+ * @param {Core} core
+ * @param {Visit} visit
+ * @param {string} column
+ * @param {string} text
+ * @param {number} choice 0: its mark is the decimal mark, 1: it groups thousands
+ * @returns {Visit}
+ */
+export function decided(core, visit, column, text, choice) {
+  const mark = onlyMark(text);
+  const points = pointsOf(visit).map((point) => {
+    const typed = typedText(point, column);
+    if (typed === null || cellValue(point, column) !== null || onlyMark(typed) !== mark) return point;
+    const { alternatives } = readPieces(core, typed);
+    return alternatives ? { ...point, ...cellChange(point, column, typed, toCell(alternatives[choice], column)) } : point;
+  });
+  return { ...visit, points };
+}
+
+/**
  * What a cell shows: the text as it was typed, but only where it still reads as the value that is computed with, since a
  * file could carry another one.
  * @param {Core} core
@@ -117,10 +137,8 @@ export function firstUnread(core, visit) {
   for (let index = 0; index < points.length; index += 1) {
     const trouble = rowTrouble(core, columns, points[index]);
     if (!trouble) continue;
-    const sentence = trouble.alternatives
-      ? `“${trouble.text}” can be read in two ways: choose one in the row.`
-      : `${trouble.sentence} Correct the ${trouble.label}, or clear the cell.`;
-    return { row: index + 1, sentence };
+    const sentence = trouble.alternatives ? `“${trouble.text}” can be read in two ways: choose one in the row.` : (trouble.sentence ?? '');
+    return { row: index + 1, label: trouble.label, sentence };
   }
   return null;
 }

@@ -42,6 +42,23 @@ export function DetailsPanel({ core, store, state, dispatch, onClose }) {
         {text('serial', 'Serial number')}
       </div>
       <div class="pair">
+        <NumberField
+          core={core}
+          label="Cannot be below"
+          unit={instrument.unit}
+          value={instrument.hard_limits?.[0]}
+          onCommit={(value) => edit('lower limit of what can occur')((now) => withHardLimit(now, 0, value))}
+          hint="for instance 0 for a level"
+        />
+        <NumberField
+          core={core}
+          label="Cannot be above"
+          unit={instrument.unit}
+          value={instrument.hard_limits?.[1]}
+          onCommit={(value) => edit('upper limit of what can occur')((now) => withHardLimit(now, 1, value))}
+        />
+      </div>
+      <div class="pair">
         {text('quantity', 'Quantity', 'for instance level')}
         {text('unit', 'Unit', 'of value and reference')}
       </div>
@@ -276,6 +293,17 @@ function Influences({ core, store, state, dispatch }) {
 function commonState(visit) {
   const states = new Set(pointsOf(visit).map((point) => point.state ?? 'as_found'));
   return states.size === 1 ? [...states][0] : '';
+}
+
+/**
+ * @param {Visit} visit
+ * @param {0|1} end
+ * @param {number|null} value
+ */
+function withHardLimit(visit, end, value) {
+  const [below, above] = visit.instrument?.hard_limits ?? [null, null];
+  const limits = /** @type {[number|null, number|null]} */ (end === 0 ? [value, above] : [below, value]);
+  return withInstrument(visit, { hard_limits: limits[0] === null && limits[1] === null ? null : limits });
 }
 
 /**

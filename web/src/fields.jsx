@@ -101,19 +101,19 @@ export function NumberField({ core, label, value, onCommit, unit, hint, refuse }
 
 /**
  * A text that reads in two ways: the person says which.
- * @param {{ text: string, alternatives: number[][], onChoose: (values: number[]) => void }} props
+ * @param {{ text: string, alternatives: number[][], onChoose: (values: number[], choice: number) => void }} props
  */
 export function TwoWays({ text, alternatives, onChoose }) {
   return (
     <span class="two-ways">
       “{text}” can be read as
-      {alternatives.map((values) => (
+      {alternatives.map((values, choice) => (
         <button
           key={values.join()}
           type="button"
           class="small"
           onMouseDown={(event) => event.preventDefault()}
-          onClick={() => onChoose(values)}
+          onClick={() => onChoose(values, choice)}
         >
           {values.map(String).join('; ')}
         </button>

@@ -3,7 +3,7 @@
 /** @import { Parts } from './store.js' */
 /** @import { Point, PointReport, Problem } from './types.js' */
 import { useMemo, useRef, useState } from 'preact/hooks';
-import { readInColumn, rowTrouble, shownText, toCell } from './cells.js';
+import { decided, readInColumn, rowTrouble, shownText, toCell } from './cells.js';
 import { chooseAndOpen, fillDown } from './commands.js';
 import { TwoWays } from './fields.jsx';
 import { cellChange, columnsOf, pointsOf, withPoint } from './visit.js';
@@ -150,7 +150,7 @@ function Row({ core, store, dispatch, index, point, columns, known, hasError, bo
                 <TwoWays
                   text={trouble.text}
                   alternatives={trouble.alternatives}
-                  onChoose={(values) => commit(store, index, trouble.column, trouble.text, values)}
+                  onChoose={(_, choice) => decide(core, store, trouble.column, trouble.text, choice)}
                 />
               )}
               {trouble?.sentence && <span>{trouble.sentence} </span>}
@@ -300,6 +300,17 @@ function commit(store, index, column, text, values) {
     what: `row ${index + 1}, ${column.replace('influence:', '')}`,
     merge: `cell:${index}:${column}`,
   });
+}
+
+/**
+ * @param {Parts['core']} core
+ * @param {Parts['store']} store
+ * @param {string} column
+ * @param {string} text
+ * @param {number} choice
+ */
+function decide(core, store, column, text, choice) {
+  store.dispatch({ type: 'edit', visit: decided(core, store.state().visit, column, text, choice), what: `“${text}” and its like read` });
 }
 
 /**

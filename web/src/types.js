@@ -112,7 +112,7 @@
 /** @typedef {{ level: 'note'|'warning'|'error', sentence: string, more?: string[], recover?: Opened }} Notice */
 /** @typedef {{ text: string, influences: Record<string, string> }} Reading what is typed into the reading field: no part of the visit */
 /** @typedef {{ problem: string|null, alternatives: number[][]|null, value: Value|null }} Answer */
-/** @typedef {{ row: number, sentence: string }} Unread */
+/** @typedef {{ row: number, label: string, sentence: string }} Unread */
 /** @typedef {{ report: Report, drawn: Drawn, asFoundCurve: Curve|null, unread: Unread|null }} Followed what the core says of a visit */
 /** @typedef {{ visit: Visit, what: string, origin: string, merge: string|null }} Step */
 /** @typedef {{ key: string, at: string, title: string, revision: number, visit: Visit, origin: string }} Draft */

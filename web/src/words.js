@@ -69,7 +69,7 @@ export function stateSentence(core, state) {
       lead: 'No points yet.',
       sentence: 'Type the first reference value and indication, paste cells, or drop a file. The sheet menu has two demos.',
     };
-  if (unread) return { level: 'warning', lead: `Row ${unread.row}.`, sentence: unread.sentence };
+  if (unread) return { level: 'warning', lead: `Row ${unread.row}, ${unread.label}.`, sentence: unread.sentence };
   const error = report.messages.find((message) => message.level === 'error');
   if (error) return { level: 'error', lead: report.fit ? 'Look at this.' : 'No curve yet.', sentence: error.sentence };
   const warning = report.messages.find((message) => message.level === 'warning' && !isReserved(message));
