@@ -9,6 +9,7 @@ const url = pathToFileURL(process.argv[2]).href;
 
 for (const name of browserNames) {
   const browser = await launch(name);
+  /** @type {number[]} */
   const times = [];
   // The first load warms the browser up and is not counted.
   for (let load = 0; load <= LOADS; load += 1) {

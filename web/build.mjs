@@ -1,5 +1,6 @@
-// Puts the page together: bundles the program and the style, deflates the WebAssembly, wraps all in the shell and seals it.
-//   node web/build.mjs --bindings DIR --wasm FILE --out FILE
+// Puts the page together: bundles the program and the style, wraps all in the shell and seals it.
+//   node web/build.mjs --bindings DIR --wasm NAME --out FILE
+// where NAME.wasm is the optimised WebAssembly and NAME.deflated the same, deflated.
 //
 // esbuild, because it bundles, minifies and lists what it took in, with nothing to configure. The file's format is
 // written down in crates/leaf/src/page.rs; this is the only other place that writes it.
@@ -9,7 +10,6 @@ import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { dirname, join, relative, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { parseArgs } from 'node:util';
-import { deflateRawSync } from 'node:zlib';
 import { build } from 'esbuild';
 import { crates, notices, npmPackages } from './notices.mjs';
 
@@ -30,12 +30,13 @@ const { values } = parseArgs({
 const bindings = resolve(values.bindings ?? join(web, 'pkg'));
 const source = resolve(values.source ?? join(web, 'src'));
 const out = resolve(values.out ?? join(root, 'dist', 'bandleaf.html'));
-if (!values.wasm) throw new Error('Name the optimised WebAssembly with --wasm.');
+if (!values.wasm) throw new Error('Name the optimised WebAssembly with --wasm, without its ending.');
 
 const { program, noticesText } = await bundleProgram();
 const style = checked('style', await bundleStyle());
-const raw = readFileSync(values.wasm);
-const wasm = deflateRawSync(raw, { level: 9, memLevel: 9 }).toString('base64');
+const raw = readFileSync(`${values.wasm}.wasm`);
+const deflated = readFileSync(`${values.wasm}.deflated`);
+const wasm = deflated.toString('base64');
 const pieces = shellPieces(hash(style, 'base64'), hash(program, 'base64'));
 const shell = elementText(pieces);
 const file = sealed({ style, shell, wasm, program });
@@ -48,6 +49,7 @@ console.log(`   ${relative(process.cwd(), out)}: ${Buffer.byteLength(file)} byte
 function sizes() {
   return {
     wasm: raw.length,
+    wasm_deflated: deflated.length,
     wasm_deflated_base64: wasm.length,
     program_without_notices: Buffer.byteLength(program) - Buffer.byteLength(JSON.stringify(noticesText)),
     notices: Buffer.byteLength(noticesText),
