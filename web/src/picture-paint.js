@@ -335,6 +335,7 @@ function shadow(context, line, frame, inks) {
 }
 
 /**
+ * The value beside the plumb line, where it hides no mark if there is such a place.
  * @param {CanvasRenderingContext2D} context
  * @param {Scene} scene
  * @param {Plumb} line
@@ -342,15 +343,10 @@ function shadow(context, line, frame, inks) {
  * @param {Inks} inks
  */
 function label(context, scene, line, frame, inks) {
-  const bottom = frame.height - MARGIN.bottom;
-  const [x, y] = pixel(frame, line.x, line.y);
   if (line.x < scene.x[0] || line.x > scene.x[1]) return;
   context.font = fontOf('bold');
   const width = context.measureText(line.label).width;
-  const toTheRight = x + width + 14 < frame.width - MARGIN.right;
-  const inTheWay = scene.view === 'value' ? y + 20 : bottom - SHADOW - 8;
-  const height = Math.min(bottom - 14, Math.max(MARGIN.top + 8, inTheWay));
-  const start = toTheRight ? x + 8 : x - 8 - width;
+  const [start, height] = labelPlace(scene, line, frame, width);
   context.textAlign = 'left';
   context.textBaseline = 'middle';
   context.globalAlpha = 0.85;
@@ -360,6 +356,29 @@ function label(context, scene, line, frame, inks) {
   context.fillStyle = inks.ink;
   context.fillText(line.label, start, height);
   context.font = fontOf();
+}
+
+/**
+ * @param {Scene} scene
+ * @param {Plumb} line
+ * @param {Frame} frame
+ * @param {number} width
+ * @returns {[number, number]}
+ */
+function labelPlace(scene, line, frame, width) {
+  const bottom = frame.height - MARGIN.bottom;
+  const [x, y] = pixel(frame, line.x, line.y);
+  const sides = [x + 8, x - 8 - width].filter((start) => start > frame.left && start + width < frame.width - MARGIN.right + 4);
+  const heights = [bottom - SHADOW - 8, bottom - 14, y + 20, y - 20, MARGIN.top + 8].map((height) =>
+    Math.min(bottom - 14, Math.max(MARGIN.top + 8, height)),
+  );
+  const places = heights.flatMap((height) => sides.map((start) => /** @type {[number, number]} */ ([start, height])));
+  const hides = (/** @type {[number, number]} */ [start, height]) =>
+    scene.marks.some((mark) => {
+      const [left, top] = pixel(frame, mark.x, mark.y);
+      return left > start - 12 && left < start + width + 12 && Math.abs(top - height) < 16;
+    });
+  return places.find((place) => !hides(place)) ?? places[0] ?? [frame.left + 8, MARGIN.top + 8];
 }
 
 /**

@@ -52,7 +52,7 @@ export function sceneOf(state) {
   const orientation = orientationOf(visit);
   const curve = drawn ? curvePlaces(drawn.rows, view, orientation) : [];
   const spanned = report?.fit?.spanned ?? null;
-  const marks = (report?.points ?? []).flatMap((row) => markOf(state, row, view) ?? []);
+  const marks = rowsOf(report).flatMap((row) => markOf(state, row, view) ?? []);
   const [xUnit, yUnit] =
     orientation === 'indication_from_reference'
       ? [visit.instrument?.unit ?? '', outputUnit(visit)]
@@ -125,6 +125,16 @@ function earlierPlaces(curve, view, orientation) {
     x: place,
     y: view === 'error' && nominal ? asError(orientation, estimate[at], nominal[at]) : estimate[at],
   }));
+}
+
+/**
+ * Each indication as the fit of its own state sees it.
+ * @param {State['report']} report
+ * @returns {PointReport[]}
+ */
+function rowsOf(report) {
+  const earlier = report?.as_found?.points ?? [];
+  return (report?.points ?? []).map((row, at) => (!row.used && earlier[at]?.used ? earlier[at] : row));
 }
 
 /**

@@ -76,7 +76,7 @@ export function stateSentence(core, state) {
   if (warning) return { level: 'warning', lead: report.fit ? 'Fitted, with a reservation.' : 'No curve yet.', sentence: warning.sentence };
   return {
     level: 'good',
-    lead: `Fitted: ${report.fit?.formula ?? ''}.`,
+    lead: `${report.as_found ? 'Fitted, as left' : 'Fitted'}: ${report.fit?.formula ?? ''}.`,
     sentence: `${fitWords(core, report)} Type a reading to get its value, or save the leaf.`,
   };
 }
