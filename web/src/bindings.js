@@ -59,7 +59,7 @@ export async function startCore(texts) {
  */
 export async function startWith(bytes) {
   await init({ module_or_path: bytes });
-  const { initSync: _, ...functions } = /** @type {any} */ (wasm);
+  const { initSync: _, default: __, ...functions } = /** @type {any} */ (wasm);
   return Object.freeze({ ...functions });
 }
 
