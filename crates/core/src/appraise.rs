@@ -385,12 +385,14 @@ impl Appraisal {
         let influence_units: Vec<String> =
             self.names.iter().map(|n| self.visit.instrument.influences[n].unit.clone()).collect();
         let coefficient_units = shape.units(&units.response, &units.argument, &influence_units);
+        let displayed = shape.display_terms();
         let unit_row = |j: usize| -> Vec<Dd> { (0..p).map(|k| if k == j { Dd::ONE } else { Dd::ZERO }).collect() };
         let terms = (0..p)
             .map(|j| {
                 let mixture = Mixture::of_components(posterior, &unit_row(j));
                 TermReport {
                     term: shape.terms()[j].clone(),
+                    display: displayed[j].clone(),
                     estimate: mixture.location(),
                     scale: mixture.scale(),
                     standard_uncertainty: mixture.standard_deviation(),
@@ -564,7 +566,9 @@ impl Appraisal {
             standard_uncertainty: None,
             expanded_uncertainty: None,
             error,
-            error_display: error.map_or_else(String::new, |e| display::error_of_indication(e, indication, reference)),
+            error_display: error.map_or_else(String::new, |e| {
+                display::error_of_indication(e, indication, reference, self.visit.instrument.output.resolution)
+            }),
             error_percent_of_span: error.zip(span).map(|(e, s)| 100.0 * e / s).filter(|e| e.is_finite()),
         }
     }

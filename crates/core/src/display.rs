@@ -239,13 +239,14 @@ fn with_sign(rounded: &Rounded) -> String {
 }
 
 /// The error of one indication with its sign, to the decimals with which indication and reference value were written,
-/// nine significant digits of these at most.
-pub fn error_of_indication(error: f64, indication: f64, reference: f64) -> String {
+/// nine significant digits of these at most, and to those of the least digit where it is known.
+pub fn error_of_indication(error: f64, indication: f64, reference: f64, resolution: Option<f64>) -> String {
     if !(error.is_finite() && indication.is_finite() && reference.is_finite()) {
         return not_finite(if error.is_finite() { f64::NAN } else { error }).to_owned();
     }
     let written = |value: f64| Rounded::shortest(value, 9).place.min(0);
-    with_sign(&Rounded::new(error, written(indication).min(written(reference))))
+    let least = resolution.filter(|r| r.is_finite() && *r > 0.0).map_or(0, written);
+    with_sign(&Rounded::new(error, written(indication).min(written(reference)).min(least)))
 }
 
 #[cfg(test)]
@@ -356,13 +357,14 @@ mod tests {
 
     #[test]
     fn an_error_keeps_the_decimals_of_what_was_read() {
-        assert_eq!(error_of_indication(1.0, 151.0, 150.0), "+1");
-        assert_eq!(error_of_indication(151.0 - 150.3, 151.0, 150.3), "+0.7");
-        assert_eq!(error_of_indication(7.267 - 7.0 - 4.0 / 15.0, 7.267, 2.5), "0.000");
-        assert_eq!(error_of_indication(-0.04, 4.0, 4.04), "−0.04");
-        assert_eq!(error_of_indication(1.0 / 3.0, 1.0 / 3.0, 0.0), "+0.333333333");
-        assert_eq!(error_of_indication(f64::NAN, 1.0, 1.0), "not known");
-        assert_eq!(error_of_indication(1.0, f64::NAN, 1.0), "not known");
+        assert_eq!(error_of_indication(1.0, 151.0, 150.0, None), "+1");
+        assert_eq!(error_of_indication(151.0 - 150.3, 151.0, 150.3, None), "+0.7");
+        assert_eq!(error_of_indication(7.267 - 7.0 - 4.0 / 15.0, 7.267, 2.5, None), "0.000");
+        assert_eq!(error_of_indication(8.01 - 8.0, 8.01, 2.5, Some(0.001)), "+0.010");
+        assert_eq!(error_of_indication(-0.04, 4.0, 4.04, None), "−0.04");
+        assert_eq!(error_of_indication(1.0 / 3.0, 1.0 / 3.0, 0.0, None), "+0.333333333");
+        assert_eq!(error_of_indication(f64::NAN, 1.0, 1.0, None), "not known");
+        assert_eq!(error_of_indication(1.0, f64::NAN, 1.0, None), "not known");
     }
 
     #[test]
@@ -397,7 +399,7 @@ mod tests {
                     interval(a, b, "mm"),
                     to_match(a, b),
                     signed(a, b),
-                    error_of_indication(a, b, a),
+                    error_of_indication(a, b, a, Some(b)),
                 ] {
                     assert!(!text.is_empty() && !text.contains('-') && !text.contains("NaN"), "{a} {b}: {text}");
                 }

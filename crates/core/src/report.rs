@@ -87,6 +87,8 @@ pub struct Units {
 pub struct TermReport {
     /// As written.
     pub term: String,
+    /// For people: `x²`.
+    pub display: String,
     /// Location of the posterior.
     pub estimate: f64,
     /// Scale of the marginal Student t (the classical standard error under the flat prior).
