@@ -1,15 +1,15 @@
 // Draws a scene on a canvas. Ink on paper: one green for the curve and its bands, ink for what was measured.
 
+/** @import { Scale } from './picture-scale.js' */
 /** @import { Mark, Plumb, Scene } from './picture-scene.js' */
 import { max } from 'd3-array';
-import { scaleLinear } from 'd3-scale';
+import { linearScale } from './picture-scale.js';
 
 const MARGIN = { top: 14, right: 16, bottom: 40 };
 const RADIUS = 4.5;
 const MANY_MARKS = 4000;
 const SHADOW = 44;
 
-/** @typedef {import('d3-scale').ScaleLinear<number, number>} Scale */
 /** @typedef {{ x: Scale, y: Scale, width: number, height: number, left: number, yTicks: number[], yFormat: (value: number) => string }} Frame */
 /** @typedef {Record<'ink'|'muted'|'grid'|'leaf'|'band'|'wide'|'card'|'ochre'|'shadow', string>} Inks */
 
@@ -42,7 +42,7 @@ export function inksOf(element) {
  * @returns {Frame}
  */
 export function frameOf(context, scene, width, height) {
-  const y = scaleLinear(scene.y, [height - MARGIN.bottom, MARGIN.top]);
+  const y = linearScale(scene.y, [height - MARGIN.bottom, MARGIN.top]);
   const count = Math.max(3, Math.floor(height / 48));
   const yTicks = y.ticks(count);
   const plain = y.tickFormat(count, scene.signed ? '+f' : 'f');
@@ -50,7 +50,7 @@ export function frameOf(context, scene, width, height) {
   context.font = fontOf();
   const widest = max(yTicks, (tick) => context.measureText(yFormat(tick)).width) ?? 0;
   const left = Math.ceil(widest) + 34;
-  return { x: scaleLinear(scene.x, [left, width - MARGIN.right]), y, width, height, left, yTicks, yFormat };
+  return { x: linearScale(scene.x, [left, width - MARGIN.right]), y, width, height, left, yTicks, yFormat };
 }
 
 /**

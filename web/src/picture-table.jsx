@@ -1,7 +1,7 @@
 // Everything that is visible in the picture, as figures.
 
 /** @import { Parts } from './store.js' */
-import { scaleLinear } from 'd3-scale';
+import { ticks } from 'd3-array';
 import { useMemo } from 'preact/hooks';
 import { asError } from './picture-scene.js';
 import { pointsOf } from './visit.js';
@@ -33,7 +33,7 @@ export function PictureTable({ core, store, state }) {
 /** @param {{ core: Parts['core'], store: Parts['store'], report: Parts['state']['report'], drawn: Parts['state']['drawn'] }} props */
 function CurveFigures({ core, store, report, drawn }) {
   if (!report?.fit || !drawn) return <p>No curve yet.</p>;
-  const places = scaleLinear([drawn.first, drawn.last], [0, 1]).ticks(PLACES);
+  const places = ticks(drawn.first, drawn.last, PLACES);
   const rows = chunks(store.curve(places[0], places[places.length - 1], places.length));
   const { argument, response, variable } = report.units;
   const hasError = rows.some((row) => !Number.isNaN(row[7]));
