@@ -3,9 +3,10 @@
 //! On entry strings are made well-formed (half a surrogate pair becomes U+FFFD) and every number becomes the nearest
 //! f64 (−0 becomes 0), so that the same visit has the same bytes wherever it was written.
 
-use crate::canonical::canonical_json;
+use crate::canonical::canonical_text;
 use crate::digest::sha256;
 use crate::misfit;
+use crate::typed::typed;
 use bandleaf_core::problem::Problem;
 use bandleaf_core::visit::{SCHEMA, Visit};
 use serde::de::{Deserialize, Deserializer, Error, MapAccess, SeqAccess, Visitor};
@@ -36,16 +37,14 @@ impl Document {
         let text = text.strip_prefix('\u{feff}').unwrap_or(text);
         let text = without_lone_surrogates(text);
         let mut reader = serde_json::Deserializer::from_str(&text);
-        let Plain(value) =
-            serde_path_to_error::deserialize(&mut reader).map_err(|error| misfit::not_json(&text, &error))?;
-        reader.end().map_err(|error| misfit::trailing(&text, &error))?;
+        let read = Plain::deserialize(&mut reader).and_then(|read| reader.end().map(|()| read));
+        let Plain(value) = read.map_err(|error| misfit::not_json(&text, &error))?;
         Document::new(value)
     }
 
     /// Takes a document that is a value already.
-    pub fn from_value(value: Value) -> Result<Document, Problem> {
-        let Plain(value) = Plain::deserialize(value)
-            .map_err(|error| Problem::error("not_json", "", format!("The visit cannot be read: {error}.")))?;
+    pub fn from_value(mut value: Value) -> Result<Document, Problem> {
+        make_plain(&mut value);
         Document::new(value)
     }
 
@@ -53,7 +52,7 @@ impl Document {
         if !value.is_object() {
             return Err(misfit::not_a_visit(&value));
         }
-        let canonical = canonical_json(&value)?;
+        let canonical = canonical_text(&value);
         Ok(Document { value, canonical })
     }
 
@@ -67,8 +66,7 @@ impl Document {
         if let Some(problem) = misfit::other_schema(&self.value, SCHEMA) {
             return Err(problem);
         }
-        serde_path_to_error::deserialize(without_unknown(&self.value))
-            .map_err(|error| misfit::wrong_kind(&self.value, &error))
+        typed(&self.value)
     }
 
     /// The canonical text (RFC 8785).
@@ -79,18 +77,6 @@ impl Document {
     /// The digest of the canonical text: `sha256:…`.
     pub fn digest(&self) -> String {
         sha256(self.canonical.as_bytes())
-    }
-}
-
-/// The value without the fields that are `null`, which means not known, as an absent field does. A `null` in a list
-/// keeps its place.
-fn without_unknown(value: &Value) -> Value {
-    match value {
-        Value::Object(fields) => Value::Object(
-            fields.iter().filter(|(_, v)| !v.is_null()).map(|(k, v)| (k.clone(), without_unknown(v))).collect(),
-        ),
-        Value::Array(items) => Value::Array(items.iter().map(without_unknown).collect()),
-        other => other.clone(),
     }
 }
 
@@ -167,6 +153,16 @@ pub fn number(value: f64) -> Option<Number> {
         return Some(Number::from(value as i64));
     }
     Number::from_f64(value)
+}
+
+/// Gives every number its one form.
+fn make_plain(value: &mut Value) {
+    match value {
+        Value::Number(written) => *written = written.as_f64().and_then(number).unwrap_or_else(|| written.clone()),
+        Value::Array(entries) => entries.iter_mut().for_each(make_plain),
+        Value::Object(fields) => fields.values_mut().for_each(make_plain),
+        Value::Null | Value::Bool(_) | Value::String(_) => {}
+    }
 }
 
 /// Replaces escapes of half a surrogate pair by U+FFFD, of the same length, so that places in the text stay.

@@ -16,9 +16,10 @@ pub mod page;
 mod press;
 mod report;
 mod seal;
+mod typed;
 mod verify;
 
-pub use canonical::canonical_json;
+pub use canonical::{canonical_json, canonical_text};
 pub use compare::{Agreement, compare};
 pub use digest::sha256;
 pub use document::{Document, MOST_BYTES, number};
@@ -26,6 +27,7 @@ pub use open::{Opened, Outcome, open};
 pub use page::{Page, Texts};
 pub use press::press;
 pub use report::{Appraised, report};
+pub use typed::typed;
 pub use verify::{Section, Verification, verify};
 
 /// The version of the program, as it stands in every seal.

@@ -1,9 +1,9 @@
 //! Sentences about a document that cannot be read: what stands where, and what belongs there.
 
 use crate::document::MOST_BYTES;
+use crate::typed::Misfit;
 use bandleaf_core::problem::Problem;
 use serde_json::Value;
-use serde_path_to_error::{Path, Segment};
 
 /// More bytes than are read.
 pub(crate) fn too_large(bytes: u64) -> Problem {
@@ -25,16 +25,7 @@ pub(crate) fn not_utf8(bytes: &[u8], at: usize) -> Problem {
 }
 
 /// A text that is no JSON, or holds something that a visit cannot hold.
-pub(crate) fn not_json(text: &str, error: &serde_path_to_error::Error<serde_json::Error>) -> Problem {
-    syntax(text, &error.path().to_string(), error.inner())
-}
-
-/// Something after the end of the document.
-pub(crate) fn trailing(text: &str, error: &serde_json::Error) -> Problem {
-    syntax(text, "", error)
-}
-
-fn syntax(text: &str, path: &str, error: &serde_json::Error) -> Problem {
+pub(crate) fn not_json(text: &str, error: &serde_json::Error) -> Problem {
     let before: String = text.lines().take(error.line()).enumerate().fold(String::new(), |mut kept, (index, line)| {
         if index + 1 == error.line() {
             let mut end = error.column().min(line.len());
@@ -62,8 +53,7 @@ fn syntax(text: &str, path: &str, error: &serde_json::Error) -> Problem {
             format!("The visit is not readable JSON at line {line}, column {column} ({reason}): correct it there.");
         ("not_json", sentence)
     };
-    let place = if path == "." { "" } else { path };
-    Problem::error(code, place, sentence).with("line", line).with("column", column).with("reason", reason)
+    Problem::error(code, "", sentence).with("line", line).with("column", column).with("reason", reason)
 }
 
 /// The reader's own words, without the place that it appends.
@@ -119,28 +109,18 @@ pub(crate) fn is_later(schema: &str, known: &str) -> bool {
 }
 
 /// A field that holds something of another kind than the program computes with.
-pub(crate) fn wrong_kind(value: &Value, error: &serde_path_to_error::Error<serde_json::Error>) -> Problem {
-    let found = at_path(value, error.path()).map(described).unwrap_or_else(|| "something else".to_owned());
-    let place = match error.path().to_string() {
-        path if path == "." => String::new(),
-        path => path,
+pub(crate) fn wrong_kind(misfit: &Misfit) -> Problem {
+    let (place, found) = match &misfit.at {
+        Some((place, value)) => (place.as_str(), described(value)),
+        None => ("", "something else".to_owned()),
     };
-    let reason = error.inner().to_string();
-    let sentence = match expected(&reason) {
-        Some(expected) => {
-            format!("{}: there is {found} where {expected} belongs; correct it.", place_in_words(&place))
-        }
-        None => format!("{}: {reason}; correct it.", place_in_words(&place)),
+    let (reason, words) = (&misfit.reason, place_in_words(place));
+    let sentence = match (expected(reason), reason.strip_prefix("missing field ")) {
+        (Some(expected), _) => format!("{words}: there is {found} where {expected} belongs; correct it."),
+        (None, Some(field)) => format!("{words}: the field {} is missing; add it.", field.replace('`', "\"")),
+        (None, None) => format!("{words}: {reason}; correct it."),
     };
-    Problem::error("wrong_kind", place, sentence).with("found", found).with("reason", reason)
-}
-
-fn at_path<'v>(value: &'v Value, path: &Path) -> Option<&'v Value> {
-    path.iter().try_fold(value, |value, segment| match segment {
-        Segment::Seq { index } => value.get(index),
-        Segment::Map { key } => value.get(key),
-        Segment::Enum { .. } | Segment::Unknown => Some(value),
-    })
+    Problem::error("wrong_kind", place, sentence).with("found", found).with("reason", reason.as_str())
 }
 
 /// `points[6].indication` as a technician counts: `Point 7, indication`.
@@ -197,6 +177,7 @@ fn expected(reason: &str) -> Option<String> {
     let words = match words {
         "f64" => "a number".to_owned(),
         "u32" | "u64" | "usize" => "a whole number".to_owned(),
+        "a shorter list" => words.to_owned(),
         "a sequence" => "a list".to_owned(),
         "a map" => "an object".to_owned(),
         "a string" => "a text".to_owned(),

@@ -25,11 +25,11 @@ pub fn press(page: &Page, document: &Document) -> Result<Vec<u8>, Problem> {
         return Err(Problem::error("other_method", "", sentence));
     }
     let numbers = Appraised::new(document)?.numbers()?;
-    let seal = Seal::new(page, old.program(), &document.digest(), numbers)?;
+    let seal = Seal::new(page, old.program(), &document.digest(), numbers);
     let visit = element_text(document.canonical());
-    let leaf = page.with(seal.text()?, visit.clone());
-    let sealed = seal.with_file(&file_digest(&leaf, &seal)?);
-    Ok(page.with(sealed.text()?, visit).assemble())
+    let leaf = page.with(seal.text(), visit.clone());
+    let sealed = seal.with_file(&file_digest(&leaf, &seal));
+    Ok(page.with(sealed.text(), visit).assemble())
 }
 
 fn changed(parts: &[&str]) -> Problem {

@@ -1,6 +1,6 @@
 //! From a document to its report, and the part of the report that a leaf carries.
 
-use crate::canonical::canonical_json;
+use crate::canonical::value_of;
 use crate::document::Document;
 use bandleaf_core::Appraisal;
 use bandleaf_core::problem::Problem;
@@ -38,9 +38,7 @@ impl Appraised {
     /// The numbers that a leaf carries: the report without drawn curves, program version and sentences for people, all
     /// of which follow from the rest and may be worded or spaced anew without any number changing.
     pub fn numbers(&self) -> Result<Value, Problem> {
-        let text = canonical_json(&self.outline())?;
-        let mut value =
-            serde_json::from_str(&text).map_err(|error| Problem::error("not_json", "", error.to_string()))?;
+        let mut value = value_of(&self.outline())?;
         trim(&mut value);
         Ok(value)
     }

@@ -1,9 +1,8 @@
 //! The seal: digests of every part, the numbers of the report, and the digest of the file with that value blanked.
 
-use crate::canonical::{canonical_json, element_text};
+use crate::canonical::{canonical_text, element_text};
 use crate::digest::{blank, sha256};
 use crate::page::{Page, Texts};
-use bandleaf_core::problem::Problem;
 use serde_json::{Value, json};
 
 /// The name and version of the file format.
@@ -28,27 +27,26 @@ impl Seal {
     /// Reads a seal; `None` where the text is not exactly what this program would write for the same content.
     pub(crate) fn read(text: &str) -> Option<Seal> {
         let seal = Seal { value: serde_json::from_str(text).ok()? };
-        (seal.value.is_object() && seal.text().ok()? == text).then_some(seal)
+        (seal.value.is_object() && seal.text() == text).then_some(seal)
     }
 
     /// A new seal, its file digest still blank.
-    pub(crate) fn new(page: &Page, program: Value, visit_digest: &str, report: Value) -> Result<Seal, Problem> {
+    pub(crate) fn new(page: &Page, program: Value, visit_digest: &str, report: Value) -> Seal {
         let mut digests: serde_json::Map<String, Value> = PROGRAM_PARTS
             .iter()
             .map(|(part, text)| ((*part).to_owned(), Value::from(sha256(text(page.texts()).as_bytes()))))
             .collect();
         digests.insert("visit".to_owned(), Value::from(visit_digest));
-        digests.insert("report".to_owned(), Value::from(sha256(canonical_json(&report)?.as_bytes())));
-        Ok(Seal {
-            value: json!({
-                "schema": SCHEMA, "program": program, "digests": digests, "file": blank(), "report": report
-            }),
-        })
+        digests.insert("report".to_owned(), Value::from(sha256(canonical_text(&report).as_bytes())));
+        let value = json!({
+            "schema": SCHEMA, "program": program, "digests": digests, "file": blank(), "report": report
+        });
+        Seal { value }
     }
 
     /// The text of its element.
-    pub(crate) fn text(&self) -> Result<String, Problem> {
-        Ok(element_text(&canonical_json(&self.value)?))
+    pub(crate) fn text(&self) -> String {
+        element_text(&canonical_text(&self.value))
     }
 
     /// The same seal with this digest of the file.
@@ -97,9 +95,9 @@ impl Seal {
 }
 
 /// The digest of the file in which this seal stands, with the digits of that digest blanked.
-pub(crate) fn file_digest(page: &Page, seal: &Seal) -> Result<String, Problem> {
-    let blanked = page.with(seal.with_file(&blank()).text()?, page.texts().visit.clone());
-    Ok(sha256(&blanked.assemble()))
+pub(crate) fn file_digest(page: &Page, seal: &Seal) -> String {
+    let blanked = page.with(seal.with_file(&blank()).text(), page.texts().visit.clone());
+    sha256(&blanked.assemble())
 }
 
 /// The program parts that are not as the seal says.

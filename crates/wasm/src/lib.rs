@@ -12,7 +12,7 @@ use bandleaf_core::report::Curve;
 use bandleaf_intake::Intake;
 use bandleaf_leaf::{Appraised, Opened, Page, canonical_json};
 use js_sys::Float64Array;
-use objects::{document, from_object, say_panics, thrown, to_object};
+use objects::{document, from_object, say_panics, thrown, to_large_object, to_object};
 use wasm_bindgen::prelude::*;
 
 /// Numbers in each row of a curve.
@@ -106,7 +106,7 @@ pub fn intake_bytes(bytes: &[u8], options: JsValue) -> Result<JsValue, JsValue> 
 fn taken_in(options: &JsValue, read: impl FnOnce(&bandleaf_intake::Options) -> Intake) -> Result<JsValue, JsValue> {
     say_panics();
     let options = if options.is_null() || options.is_undefined() { Default::default() } else { from_object(options)? };
-    to_object(&read(&options))
+    to_large_object(&read(&options))
 }
 
 /// Reads one typed cell.
