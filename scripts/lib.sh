@@ -27,30 +27,36 @@ locked_version() { awk -v name="\"$1\"" '$1 == "name" && $3 == name { getline; g
 
 newest_wasm_linker() { compgen -c wasm-ld | sort -V | tail -1; }
 
+# Whether the source of the standard library lies beside a compiler: it is built for the page, for size.
+has_library_source() { [[ -f "$("$1" --print sysroot)/lib/rustlib/src/rust/library/Cargo.lock" ]]; }
+
 # Which of the two routes to a WebAssembly standard library is in place: "rustup", "debian" or nothing.
 wasm_route() {
   local wanted="${BANDLEAF_WASM_ROUTE:-}"
-  if [[ $wanted != debian ]] && have rustup && rustup target list --installed 2>/dev/null | grep -qx wasm32-unknown-unknown; then
+  if [[ $wanted != debian ]] && have rustup && rustup target list --installed 2>/dev/null | grep -qx wasm32-unknown-unknown && has_library_source rustc; then
     echo rustup
-  elif [[ $wanted != rustup && -x /usr/bin/cargo && -x /usr/bin/rustc && -n $(newest_wasm_linker) ]] &&
-    [[ -f $(/usr/bin/rustc --print sysroot)/lib/rustlib/src/rust/library/Cargo.lock ]]; then
+  elif [[ $wanted != rustup && -x /usr/bin/cargo && -x /usr/bin/rustc && -n $(newest_wasm_linker) ]] && has_library_source /usr/bin/rustc; then
     echo debian
   fi
 }
 
 # Runs a command with the environment of the WebAssembly build. Paths are remapped so that no builder's path is in the file.
+# The standard library is built along, for size: no words for a panic (a trap is one all the same, and the page says that
+# the program stopped), no places in the source, no debug output. A third of the file.
 with_wasm_toolchain() {
   local route sysroot registry flags home="${CARGO_HOME:-$HOME/.cargo}"
   route="$(wasm_route)"
   (
+    export RUSTC_BOOTSTRAP=1 CARGO_UNSTABLE_BUILD_STD=std,panic_abort CARGO_UNSTABLE_BUILD_STD_FEATURES=optimize_for_size
     if [[ $route == debian ]]; then
-      export PATH="/usr/bin:$PATH" RUSTC_BOOTSTRAP=1 CARGO_UNSTABLE_BUILD_STD=std,panic_abort
+      export PATH="/usr/bin:$PATH"
       CARGO_TARGET_WASM32_UNKNOWN_UNKNOWN_LINKER="$(newest_wasm_linker)"
       export CARGO_TARGET_WASM32_UNKNOWN_UNKNOWN_LINKER
     fi
     sysroot="$(rustc --print sysroot)"
     # Of several prefixes that match, the compiler takes the last.
-    flags=(-Ctarget-feature=+simd128 "--remap-path-prefix=$root=/bandleaf" "--remap-path-prefix=$sysroot=/rust"
+    flags=(-Ctarget-feature=+simd128 -Zunstable-options -Cpanic=immediate-abort -Zlocation-detail=none -Zfmt-debug=none
+      "--remap-path-prefix=$root=/bandleaf" "--remap-path-prefix=$sysroot=/rust"
       "--remap-path-prefix=$home=/cargo")
     for registry in "$home"/registry/src/*; do flags+=("--remap-path-prefix=$registry=/crates"); done
     CARGO_ENCODED_RUSTFLAGS="$(printf '\037%s' "${flags[@]}")"
