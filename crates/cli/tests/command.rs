@@ -142,7 +142,7 @@ fn a_cell_that_cannot_be_read_is_refused() {
         "--terms",
         "1, x",
     ]));
-    assert!(said.contains("broken") && said.contains("row 3"), "{said}");
+    assert!(said.contains("broken") && said.contains("Row 3"), "{said}");
     let said = refused(&bandleaf(["appraise", path(&table), "--reference", "reference", "--indication", "indication"]));
     assert!(said.contains("--terms"), "{said}");
     let said = refused(&bandleaf([

@@ -5,8 +5,9 @@
 
 use crate::canonical::canonical_text;
 use crate::digest::sha256;
+
 use crate::misfit;
-use crate::typed::typed;
+use crate::readable::typed;
 use bandleaf_core::problem::Problem;
 use bandleaf_core::visit::{SCHEMA, Visit};
 use serde::de::{Deserialize, Deserializer, Error, MapAccess, SeqAccess, Visitor};

@@ -14,10 +14,11 @@ mod misfit;
 mod open;
 pub mod page;
 mod press;
+pub mod readable;
 mod report;
 mod seal;
-mod typed;
 mod verify;
+mod visit;
 
 pub use canonical::{canonical_json, canonical_text};
 pub use compare::{Agreement, compare};
@@ -26,8 +27,8 @@ pub use document::{Document, MOST_BYTES, number};
 pub use open::{Opened, Outcome, open};
 pub use page::{Page, Texts};
 pub use press::press;
+pub use readable::typed;
 pub use report::{Appraised, report};
-pub use typed::typed;
 pub use verify::{Section, Verification, verify};
 
 /// The version of the program, as it stands in every seal.

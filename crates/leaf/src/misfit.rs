@@ -1,7 +1,7 @@
 //! Sentences about a document that cannot be read: what stands where, and what belongs there.
 
 use crate::document::MOST_BYTES;
-use crate::typed::Misfit;
+use crate::readable::Misfit;
 use bandleaf_core::problem::Problem;
 use serde_json::Value;
 
@@ -108,19 +108,18 @@ pub(crate) fn is_later(schema: &str, known: &str) -> bool {
     }
 }
 
-/// A field that holds something of another kind than the program computes with.
+/// A field that holds something of another kind than the program computes with, or is missing.
 pub(crate) fn wrong_kind(misfit: &Misfit) -> Problem {
-    let (place, found) = match &misfit.at {
-        Some((place, value)) => (place.as_str(), described(value)),
-        None => ("", "something else".to_owned()),
+    let Misfit { place, found, expected, missing } = misfit;
+    let words = place_in_words(place);
+    let sentence = if *missing {
+        format!("{words}: the field \"{expected}\" is missing; add it.")
+    } else {
+        format!("{words}: there is {found} where {expected} belongs; correct it.")
     };
-    let (reason, words) = (&misfit.reason, place_in_words(place));
-    let sentence = match (expected(reason), reason.strip_prefix("missing field ")) {
-        (Some(expected), _) => format!("{words}: there is {found} where {expected} belongs; correct it."),
-        (None, Some(field)) => format!("{words}: the field {} is missing; add it.", field.replace('`', "\"")),
-        (None, None) => format!("{words}: {reason}; correct it."),
-    };
-    Problem::error("wrong_kind", place, sentence).with("found", found).with("reason", reason.as_str())
+    Problem::error("wrong_kind", place.as_str(), sentence)
+        .with("found", found.as_str())
+        .with("expected", expected.as_str())
 }
 
 /// `points[6].indication` as a technician counts: `Point 7, indication`.
@@ -134,7 +133,8 @@ fn place_in_words(place: &str) -> String {
     }
 }
 
-fn described(value: &Value) -> String {
+/// What stands there, in words.
+pub(crate) fn described(value: &Value) -> String {
     match value {
         Value::Null => "nothing (null)".to_owned(),
         Value::Bool(value) => format!("{value}"),
@@ -155,38 +155,4 @@ fn shortened(text: &str) -> String {
     let line: String =
         text.chars().take(MOST).map(|character| if character.is_control() { ' ' } else { character }).collect();
     if text.chars().count() > MOST { line + "…" } else { line }
-}
-
-/// What the reader expected, in a technician's words; `None` where its own words are the best there are.
-fn expected(reason: &str) -> Option<String> {
-    if let Some(kind) = reason.strip_prefix("data did not match any variant of untagged enum ") {
-        let words = match kind {
-            "Indication" => "a number or a list of numbers",
-            "Term" | "Terms" => "a term such as \"x^2\", a list of terms or a shape object",
-            "Place" => "a number, or an object with x and influences",
-            "Asked" => "a list of indications, or an object with indications",
-            "NumberOr" => "a number or the word \"integrated\"",
-            _ => return None,
-        };
-        return Some(words.to_owned());
-    }
-    let words = reason.rsplit_once("expected ").map(|(_, words)| words)?;
-    if reason.starts_with("unknown variant") {
-        return Some(words.replace('`', "\""));
-    }
-    let words = match words {
-        "f64" => "a number".to_owned(),
-        "u32" | "u64" | "usize" => "a whole number".to_owned(),
-        "a shorter list" => words.to_owned(),
-        "a sequence" => "a list".to_owned(),
-        "a map" => "an object".to_owned(),
-        "a string" => "a text".to_owned(),
-        "a boolean" => "true or false".to_owned(),
-        words if words.starts_with("struct ") => "an object".to_owned(),
-        words if words.contains("tuple of size 2") || words.contains("array of length 2") => {
-            "a list of two numbers".to_owned()
-        }
-        _ => return None,
-    };
-    Some(words)
 }

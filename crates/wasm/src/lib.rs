@@ -9,10 +9,10 @@ use bandleaf_core::appraise::spread;
 use bandleaf_core::display;
 use bandleaf_core::problem::Problem;
 use bandleaf_core::report::Curve;
-use bandleaf_intake::Intake;
+use bandleaf_intake::{Intake, Options};
 use bandleaf_leaf::{Appraised, Opened, Page, canonical_json};
 use js_sys::Float64Array;
-use objects::{document, from_object, say_panics, thrown, to_large_object, to_object};
+use objects::{document, from_object, options, say_panics, thrown, to_large_object, to_object};
 use wasm_bindgen::prelude::*;
 
 /// Numbers in each row of a curve.
@@ -103,10 +103,9 @@ pub fn intake_bytes(bytes: &[u8], options: JsValue) -> Result<JsValue, JsValue> 
     taken_in(&options, |options| bandleaf_intake::read_bytes(bytes, options))
 }
 
-fn taken_in(options: &JsValue, read: impl FnOnce(&bandleaf_intake::Options) -> Intake) -> Result<JsValue, JsValue> {
+fn taken_in(object: &JsValue, read: impl FnOnce(&Options) -> Intake) -> Result<JsValue, JsValue> {
     say_panics();
-    let options = if options.is_null() || options.is_undefined() { Default::default() } else { from_object(options)? };
-    to_large_object(&read(&options))
+    to_large_object(&read(&options(object)?))
 }
 
 /// Reads one typed cell.

@@ -1,10 +1,11 @@
 //! Between the page's objects and Rust's data.
 
 use bandleaf_core::problem::Problem;
+use bandleaf_intake::Options;
 use bandleaf_leaf::Document;
+use bandleaf_leaf::readable::Readable;
 use js_sys::{Array, Object};
 use serde::Serialize;
-use serde::de::DeserializeOwned;
 use serde_json::{Map, Value};
 use std::sync::Once;
 use wasm_bindgen::{JsCast, JsValue};
@@ -35,10 +36,21 @@ pub(crate) fn document(visit: &JsValue) -> Result<Document, JsValue> {
     plain(visit, "", 0).and_then(|value| Document::from_value(value.unwrap_or_default())).map_err(thrown)
 }
 
-/// Options, a reading or the texts of a page in an object.
-pub(crate) fn from_object<T: DeserializeOwned>(object: &JsValue) -> Result<T, JsValue> {
+/// A reading or the texts of a page in an object.
+pub(crate) fn from_object<T: Readable>(object: &JsValue) -> Result<T, JsValue> {
     let value = plain(object, "", 0).map_err(thrown)?.unwrap_or_default();
     bandleaf_leaf::typed(&value).map_err(thrown)
+}
+
+/// The options of the intake in an object; none where there is no object.
+pub(crate) fn options(object: &JsValue) -> Result<Options, JsValue> {
+    match plain(object, "", 0).map_err(thrown)? {
+        None | Some(Value::Null) => Ok(Options::default()),
+        Some(value) => serde_json::from_value(value).map_err(|error| {
+            let sentence = format!("The options of the intake cannot be used: {error}.");
+            thrown(Problem::error("wrong_kind", "", sentence))
+        }),
+    }
 }
 
 /// The same as writing the object as JSON and reading it again: `None` for what JSON leaves out. Numbers that JSON
