@@ -37,9 +37,7 @@ impl Document {
         let text = std::str::from_utf8(bytes).map_err(|error| misfit::not_utf8(bytes, error.valid_up_to()))?;
         let text = text.strip_prefix('\u{feff}').unwrap_or(text);
         let text = without_lone_surrogates(text);
-        let mut reader = serde_json::Deserializer::from_str(&text);
-        let read = Plain::deserialize(&mut reader).and_then(|read| reader.end().map(|()| read));
-        let Plain(value) = read.map_err(|error| misfit::not_json(&text, &error))?;
+        let value = json(&text).map_err(|error| misfit::not_json(&text, &error))?;
         Document::new(value)
     }
 
@@ -79,6 +77,14 @@ impl Document {
     pub fn digest(&self) -> String {
         sha256(self.canonical.as_bytes())
     }
+}
+
+/// Reads a JSON text.
+pub(crate) fn json(text: &str) -> Result<Value, serde_json::Error> {
+    let mut reader = serde_json::Deserializer::from_str(text);
+    let Plain(value) = Plain::deserialize(&mut reader)?;
+    reader.end()?;
+    Ok(value)
 }
 
 /// A JSON value with numbers of one kind only and no field twice.

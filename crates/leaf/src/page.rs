@@ -9,8 +9,9 @@
 //! writing out the document tree (which extensions and the program itself change). No piece holds the shell's own
 //! text, so the list can hold them all. Line ends are LF; the last byte is the `>` of `</html>`.
 
+use crate::document::json;
+use crate::readable::typed;
 use bandleaf_core::problem::Problem;
-use serde::{Deserialize, Serialize};
 
 /// How the shell element begins; the first place where this stands in a file is the shell.
 const SHELL_OPENING: &str = "<script type=\"application/json\" id=\"shell\">";
@@ -28,7 +29,7 @@ const PAGE_CLOSING: &str = "</html>";
 pub const MOST_BYTES: u64 = 200_000_000;
 
 /// The texts of the six elements.
-#[derive(Clone, Debug, Default, PartialEq, Eq, Serialize, Deserialize)]
+#[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub struct Texts {
     /// The style sheet.
     pub style: String,
@@ -172,7 +173,10 @@ impl<'f> Rest<'f> {
 
 /// The seven pieces in the shell.
 fn pieces(shell: &str) -> Result<[String; 7], Problem> {
-    serde_json::from_str::<[String; 7]>(shell).map_err(|_| damaged("shell_changed", "its shell was changed"))
+    let changed = || damaged("shell_changed", "its shell was changed");
+    let list = json(shell).map_err(|_| changed())?;
+    let pieces: Vec<String> = typed(&list).map_err(|_| changed())?;
+    pieces.try_into().map_err(|_| changed())
 }
 
 fn without_shell(file: &str) -> Problem {

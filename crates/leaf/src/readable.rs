@@ -19,6 +19,19 @@ pub trait Readable: Sized {
     fn read(at: At<'_, '_>) -> Result<Self, Misfit>;
 }
 
+/// A field to be filled in. Behind a pointer, so that an object is a table of its fields and not a piece of code for each.
+pub trait Slot {
+    /// Puts what stands at a place into the field.
+    fn fill(&mut self, at: At<'_, '_>) -> Result<(), Misfit>;
+}
+
+impl<T: Readable> Slot for T {
+    fn fill(&mut self, at: At<'_, '_>) -> Result<(), Misfit> {
+        *self = T::read(at)?;
+        Ok(())
+    }
+}
+
 /// Reads typed data. The error names the field and says what stands there and what belongs there.
 pub fn typed<T: Readable>(value: &Value) -> Result<T, Problem> {
     T::read(At { value, place: None }).map_err(|misfit| misfit::wrong_kind(&misfit))
@@ -107,18 +120,23 @@ impl<'v> At<'v, '_> {
         self.value.as_str().ok_or_else(|| self.misfit("a text"))
     }
 
+    /// Fills in the fields of an object that are there.
+    pub fn object(self, fields: &mut [(&str, &mut dyn Slot)]) -> Result<(), Misfit> {
+        self.fields()?;
+        fields.iter_mut().try_for_each(|(name, slot)| self.field(name, *slot))
+    }
+
     /// Fills in a field where it is there.
-    pub fn field<T: Readable>(self, name: &str, slot: &mut T) -> Result<(), Misfit> {
-        if let Some(value) = known(self.value.get(name)) {
-            let place = Place { within: self.place, step: Step::Field(name) };
-            *slot = T::read(At { value, place: Some(&place) })?;
+    pub fn field(self, name: &str, slot: &mut dyn Slot) -> Result<(), Misfit> {
+        match known(self.value.get(name)) {
+            Some(value) => slot.fill(At { value, place: Some(&Place { within: self.place, step: Step::Field(name) }) }),
+            None => Ok(()),
         }
-        Ok(())
     }
 
     /// A field that may not be left out.
     pub fn required<T: Readable>(self, name: &str) -> Result<T, Misfit> {
-        let mut slot = None;
+        let mut slot: Option<T> = None;
         self.field(name, &mut slot)?;
         slot.ok_or_else(|| Misfit { missing: true, ..self.misfit(name) })
     }

@@ -2,8 +2,9 @@
 
 use crate::canonical::{canonical_text, element_text};
 use crate::digest::{blank, sha256};
+use crate::document::json;
 use crate::page::{Page, Texts};
-use serde_json::{Value, json};
+use serde_json::Value;
 
 /// The name and version of the file format.
 pub(crate) const SCHEMA: &str = "bandleaf.leaf.1";
@@ -26,7 +27,7 @@ pub(crate) struct Seal {
 impl Seal {
     /// Reads a seal; `None` where the text is not exactly what this program would write for the same content.
     pub(crate) fn read(text: &str) -> Option<Seal> {
-        let seal = Seal { value: serde_json::from_str(text).ok()? };
+        let seal = Seal { value: json(text).ok()? };
         (seal.value.is_object() && seal.text() == text).then_some(seal)
     }
 
@@ -38,7 +39,7 @@ impl Seal {
             .collect();
         digests.insert("visit".to_owned(), Value::from(visit_digest));
         digests.insert("report".to_owned(), Value::from(sha256(canonical_text(&report).as_bytes())));
-        let value = json!({
+        let value = serde_json::json!({
             "schema": SCHEMA, "program": program, "digests": digests, "file": blank(), "report": report
         });
         Seal { value }

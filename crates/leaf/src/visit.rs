@@ -7,17 +7,18 @@ use bandleaf_core::visit::{
     Model, Noise, NoiseKind, Nominal, NumberOr, Occasion, Orientation, Output, Place, Plan, Point, Profile, Reading,
     ShrinkageBasis, ShrinkageIntercept, Standard, State, Suspects, Term, Terms, Tolerance, Visit,
 };
+use serde::de::IgnoredAny;
 use serde_json::Value;
+use std::collections::BTreeMap;
 
 /// Objects whose fields may all be absent. Taking the object apart makes the compiler notice a field that is not listed.
 macro_rules! objects {
     ($($kind:ident { $($field:ident)* })*) => {$(
         impl Readable for $kind {
             fn read(at: At<'_, '_>) -> Result<$kind, Misfit> {
-                at.fields()?;
                 let mut object = $kind::default();
                 let $kind { $($field),* } = &mut object;
-                $(at.field(stringify!($field), $field)?;)*
+                at.object(&mut [$((stringify!($field), $field)),*])?;
                 Ok(object)
             }
         }
@@ -151,19 +152,22 @@ impl Readable for KnownBefore {
             "flat" => Ok(KnownBefore::Flat),
             "shrinkage" => {
                 let (mut basis, mut intercept) = (ShrinkageBasis::default(), ShrinkageIntercept::default());
-                at.field("basis", &mut basis)?;
-                at.field("intercept", &mut intercept)?;
+                at.object(&mut [("basis", &mut basis), ("intercept", &mut intercept)])?;
                 Ok(KnownBefore::Shrinkage { precision: at.required("precision")?, basis, intercept })
             }
             "coefficients" => {
-                let (mut terms, mut covariance, mut standard_uncertainty) = (None, None, None);
-                at.field("terms", &mut terms)?;
-                at.field("covariance", &mut covariance)?;
-                at.field("standard_uncertainty", &mut standard_uncertainty)?;
+                let mut terms: Option<Vec<String>> = None;
+                let mut covariance: Option<Vec<Vec<f64>>> = None;
+                let mut standard_uncertainty: Option<Vec<Option<f64>>> = None;
+                at.object(&mut [
+                    ("terms", &mut terms),
+                    ("covariance", &mut covariance),
+                    ("standard_uncertainty", &mut standard_uncertainty),
+                ])?;
                 Ok(KnownBefore::Coefficients { terms, mean: at.required("mean")?, covariance, standard_uncertainty })
             }
             "values" => {
-                let mut values = Vec::new();
+                let mut values: Vec<IgnoredAny> = Vec::new();
                 at.field("values", &mut values)?;
                 Ok(KnownBefore::Values { values })
             }
@@ -182,7 +186,7 @@ impl Readable for Place {
         match at.value() {
             Value::Number(_) => f64::read(at).map(Place::Value),
             Value::Object(_) => {
-                let mut influences = Default::default();
+                let mut influences: BTreeMap<String, f64> = BTreeMap::new();
                 at.field("influences", &mut influences)?;
                 Ok(Place::Under { x: at.required("x")?, influences })
             }
@@ -207,10 +211,12 @@ impl Readable for Reading {
         at.fields()?;
         let mut reading = Reading { indications: at.required("indications")?, ..Reading::default() };
         let Reading { indications: _, influences, resolution, known, indication_uncertainty } = &mut reading;
-        at.field("influences", influences)?;
-        at.field("resolution", resolution)?;
-        at.field("known", known)?;
-        at.field("indication_uncertainty", indication_uncertainty)?;
+        at.object(&mut [
+            ("influences", influences),
+            ("resolution", resolution),
+            ("known", known),
+            ("indication_uncertainty", indication_uncertainty),
+        ])?;
         Ok(reading)
     }
 }
