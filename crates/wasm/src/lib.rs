@@ -3,6 +3,7 @@
 //! Objects that come out are plain, with `null` for what is not known. What cannot be used is thrown as a plain object
 //! `{level, code, args, place, sentence}`.
 
+mod intake_options;
 mod objects;
 
 use bandleaf_core::appraise::spread;

@@ -1,5 +1,6 @@
 //! Between the page's objects and Rust's data.
 
+use crate::intake_options;
 use bandleaf_core::problem::Problem;
 use bandleaf_intake::Options;
 use bandleaf_leaf::Document;
@@ -44,13 +45,7 @@ pub(crate) fn from_object<T: Readable>(object: &JsValue) -> Result<T, JsValue> {
 
 /// The options of the intake in an object; none where there is no object.
 pub(crate) fn options(object: &JsValue) -> Result<Options, JsValue> {
-    match plain(object, "", 0).map_err(thrown)? {
-        None | Some(Value::Null) => Ok(Options::default()),
-        Some(value) => serde_json::from_value(value).map_err(|error| {
-            let sentence = format!("The options of the intake cannot be used: {error}.");
-            thrown(Problem::error("wrong_kind", "", sentence))
-        }),
-    }
+    plain(object, "", 0).and_then(|value| intake_options::options(&value.unwrap_or_default())).map_err(thrown)
 }
 
 /// The same as writing the object as JSON and reading it again: `None` for what JSON leaves out. Numbers that JSON
