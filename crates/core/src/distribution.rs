@@ -323,6 +323,10 @@ mod tests {
         {
             assert!((chi_squared_quantile(nu, p) - printed).abs() < 5e-4);
         }
+        // Many degrees of freedom: the cube-root approximation, whose relative error is of order 1/ν².
+        let h: f64 = 2.0 / 9e6;
+        let cube = 1.0 - h - 1.959_963_984_540_054 * float::sqrt(h);
+        close(chi_squared_quantile(1e6, 0.025), 1e6 * cube * cube * cube, 1e-8);
         // ν = 2: −2 ln(1 − p).
         close(chi_squared_quantile(2.0, 0.975), -2.0 * float::ln(0.025), 1e-13);
         close(chi_squared_quantile(2.0, 1e-6), -2.0 * float::ln_1p(-1e-6), 1e-13);

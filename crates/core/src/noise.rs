@@ -7,6 +7,12 @@
 use crate::problem::Problem;
 use crate::visit::{Noise, NoiseKind, NumberOr, Profile, Visit, is_usable};
 
+/// Fewer degrees of freedom than this say nothing.
+const LEAST_DEGREES: f64 = 0.1;
+
+/// With more degrees of freedom than this the noise is known.
+const MOST_DEGREES: f64 = 1e6;
+
 /// What is known about σ.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub enum Sigma {
@@ -46,13 +52,13 @@ impl Sigma {
             NoiseKind::Unknown => Ok(Sigma::Unknown),
             NoiseKind::Known => deviation(false).map(Sigma::Known),
             NoiseKind::Stated => match noise.degrees_of_freedom {
-                Some(nu) if nu > 0.0 && nu.is_finite() => {
+                Some(nu) if (LEAST_DEGREES..=MOST_DEGREES).contains(&nu) => {
                     Ok(Sigma::Stated { degrees_of_freedom: nu, standard_deviation: deviation(true)? })
                 }
                 _ => Err(Problem::error(
                     "noise_degrees_of_freedom",
                     "model.noise.degrees_of_freedom",
-                    "The stated noise needs its degrees of freedom, a positive number.",
+                    "The stated noise needs its degrees of freedom, a number from 0.1 to 1000000: with more, state it as known.",
                 )),
             },
         }
