@@ -35,7 +35,7 @@ fn write(value: &Value, text: &mut String) {
         Value::Bool(false) => text.push_str("false"),
         Value::Number(number) => {
             // Every JSON number that this program holds is a finite f64, or a whole number that passes through one.
-            text.push_str(ryu_js::Buffer::new().format(number.as_f64().unwrap_or_default()));
+            text.push_str(&number_text(number.as_f64().unwrap_or_default()));
         }
         Value::String(string) => write_string(string, text),
         Value::Array(entries) => {
@@ -50,6 +50,11 @@ fn write(value: &Value, text: &mut String) {
         }
         Value::Object(fields) => write_object(fields, text),
     }
+}
+
+/// A number as ECMAScript writes it.
+pub fn number_text(value: f64) -> String {
+    ryu_js::Buffer::new().format(value).to_owned()
 }
 
 fn write_object(fields: &Map<String, Value>, text: &mut String) {

@@ -20,7 +20,7 @@ mod seal;
 mod verify;
 mod visit;
 
-pub use canonical::{canonical_json, canonical_text};
+pub use canonical::{canonical_json, canonical_text, number_text};
 pub use compare::{Agreement, compare};
 pub use digest::sha256;
 pub use document::{Document, MOST_BYTES, number};

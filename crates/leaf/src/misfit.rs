@@ -1,5 +1,6 @@
 //! Sentences about a document that cannot be read: what stands where, and what belongs there.
 
+use crate::canonical::canonical_text;
 use crate::document::MOST_BYTES;
 use crate::readable::Misfit;
 use bandleaf_core::problem::Problem;
@@ -138,7 +139,7 @@ pub(crate) fn described(value: &Value) -> String {
     match value {
         Value::Null => "nothing (null)".to_owned(),
         Value::Bool(value) => format!("{value}"),
-        Value::Number(number) => format!("the number {number}"),
+        Value::Number(_) => format!("the number {}", canonical_text(value)),
         Value::String(text) => format!("the text “{}”", shortened(text)),
         Value::Array(entries) => match entries.iter().enumerate().find(|(_, entry)| !entry.is_number()) {
             Some((index, entry)) if !entry.is_array() => {

@@ -7,7 +7,9 @@ use bandleaf_leaf::Document;
 use bandleaf_leaf::readable::Readable;
 use js_sys::{Array, Object};
 use serde::Serialize;
+use serde_json::ser::Formatter;
 use serde_json::{Map, Value};
+use std::io;
 use std::sync::Once;
 use wasm_bindgen::{JsCast, JsValue};
 
@@ -28,8 +30,19 @@ pub(crate) fn to_object<T: Serialize>(value: &T) -> Result<JsValue, JsValue> {
 
 /// The same for something that may have a hundred thousand rows: written straight out, without a tree of values.
 pub(crate) fn to_large_object<T: Serialize>(value: &T) -> Result<JsValue, JsValue> {
-    let text = serde_json::to_string(value).map_err(|error| JsValue::from_str(&error.to_string()))?;
-    js_sys::JSON::parse(&text)
+    let mut text = Vec::new();
+    let written = value.serialize(&mut serde_json::Serializer::with_formatter(&mut text, Numbers));
+    written.map_err(|error| JsValue::from_str(&error.to_string()))?;
+    js_sys::JSON::parse(&String::from_utf8_lossy(&text))
+}
+
+/// Numbers as the canonical text has them, so that the page carries the tables of one way of writing them only.
+struct Numbers;
+
+impl Formatter for Numbers {
+    fn write_f64<W: io::Write + ?Sized>(&mut self, writer: &mut W, value: f64) -> io::Result<()> {
+        writer.write_all(bandleaf_leaf::number_text(value).as_bytes())
+    }
 }
 
 /// The visit in an object.
