@@ -350,7 +350,7 @@ mod tests {
     #[test]
     fn every_visit_can_be_read() {
         for (index, json) in visits(COUNT).into_iter().enumerate() {
-            let read: Result<bandleaf_core::visit::Visit, _> = serde_json::from_value(json);
+            let read = crate::read(json);
             assert!(read.is_ok(), "{index}: {read:?}");
         }
     }

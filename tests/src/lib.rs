@@ -9,15 +9,25 @@ pub mod random;
 pub mod report_path;
 pub mod simulate;
 
+use bandleaf_core::problem::Problem;
 use bandleaf_core::visit::Visit;
+use bandleaf_leaf::Document;
 use serde_json::Value;
+
+/// A visit from JSON, by the reader that is shipped.
+///
+/// # Errors
+/// Where the JSON is no visit.
+pub fn read(json: Value) -> Result<Visit, Problem> {
+    Document::from_value(json)?.visit()
+}
 
 /// A visit from JSON written in a test.
 ///
 /// # Panics
 /// Where the JSON is no visit: an error of the test, not of the program.
 pub fn visit(json: Value) -> Visit {
-    serde_json::from_value(json).unwrap_or_else(|error| panic!("the test's visit cannot be read: {error}"))
+    read(json).unwrap_or_else(|problem| panic!("the test's visit cannot be read: {} at {}", problem, problem.place))
 }
 
 /// The report of a visit without the drawn curve, as JSON.

@@ -5,6 +5,7 @@ use bandleaf_core::appraise;
 use bandleaf_core::visit::{Reading, Visit};
 use bandleaf_tests::generate;
 use bandleaf_tests::random::SplitMix64;
+use bandleaf_tests::read;
 use serde_json::{Value, json};
 use std::panic::{AssertUnwindSafe, catch_unwind};
 
@@ -105,7 +106,7 @@ fn nothing_in_a_visit_makes_the_core_panic() {
     let mut failures = Vec::new();
     let mut computed = 0;
     for seed in 0..ROUNDS {
-        let Ok(visit) = serde_json::from_value::<Visit>(mutated(seed)) else { continue };
+        let Ok(visit) = read(mutated(seed)) else { continue };
         computed += 1;
         failures.extend(examined(&visit).err().map(|what| format!("seed {seed}: {what}")));
     }
@@ -117,7 +118,7 @@ fn nothing_in_a_visit_makes_the_core_panic() {
 fn generated_visits_have_both_outcomes() {
     let (mut with, mut without, mut failures) = (0, 0, Vec::new());
     for (index, body) in generate::visits(generate::COUNT).into_iter().enumerate() {
-        let visit: Visit = serde_json::from_value(body).expect("a visit");
+        let visit = read(body).expect("a visit");
         failures.extend(examined(&visit).err().map(|what| format!("visit {index}: {what}")));
         if appraise(&visit).outline().fit.is_some() {
             with += 1;
