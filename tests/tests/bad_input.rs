@@ -207,8 +207,9 @@ fn noise_that_is_no_noise() {
     refused(noise("known", json!(-1), json!(null)), s, &["-1"]);
     refused(noise("known", json!(null), json!(null)), s, &["missing"]);
     refused(noise("stated", json!(0), json!(5)), s, &["0"]);
-    refused(noise("stated", json!(1), json!(0)), nu, &["positive"]);
-    refused(noise("stated", json!(1), json!(null)), nu, &["positive"]);
+    refused(noise("stated", json!(1), json!(0)), nu, &["degrees of freedom"]);
+    refused(noise("stated", json!(1), json!(null)), nu, &["degrees of freedom"]);
+    refused(noise("stated", json!(1), json!(1e150)), nu, &["1000000"]);
 }
 
 #[test]
