@@ -6,7 +6,7 @@
 // written down in crates/leaf/src/page.rs; this is the only other place that writes it.
 
 import { createHash } from 'node:crypto';
-import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { dirname, join, relative, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { parseArgs } from 'node:util';
@@ -41,9 +41,14 @@ const pieces = shellPieces(hash(style, 'base64'), hash(program, 'base64'));
 const shell = elementText(pieces);
 const file = sealed({ style, shell, wasm, program });
 mkdirSync(dirname(out), { recursive: true });
-writeFileSync(out, file);
+writeChanged(out, file);
 writeFileSync(out.replace(/\.html$/, '.sizes.json'), `${JSON.stringify(sizes(), null, 2)}\n`);
 console.log(`   ${relative(process.cwd(), out)}: ${Buffer.byteLength(file)} bytes`);
+
+/** Leaves a file alone that is right already, so that what is built from it is not built again. @param {string} path @param {string} content */
+function writeChanged(path, content) {
+  if (!existsSync(path) || readFileSync(path, 'utf8') !== content) writeFileSync(path, content);
+}
 
 /** The size of the page by part, in bytes. */
 function sizes() {

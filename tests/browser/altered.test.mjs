@@ -37,8 +37,8 @@ for (const name of browserNames) {
     });
     after(() => browser.close());
 
-    it('shows a value in the unchanged leaf, so that the tests below can fail', async (context) => {
-      const tab = await openFile(browser, temporaryFile(context, 'leaf.html', pressedDemo(context)));
+    it('shows a value in the unchanged leaf, so that the tests below can fail', async () => {
+      const tab = await openFile(browser, temporaryFile('leaf.html', pressedDemo()));
       await waitForState(tab, 'ready');
       await typeInto(tab, '#reading', '812');
       await tab.waitForFunction(() => /±\s*\d/.test(document.body.innerText), { timeout: 10_000 });
@@ -46,8 +46,8 @@ for (const name of browserNames) {
     });
 
     for (const [what, change] of Object.entries(CHANGES)) {
-      it(`refuses: ${what}`, async (context) => {
-        const tab = await openFile(browser, temporaryFile(context, 'leaf.html', change(pressedDemo(context))));
+      it(`refuses: ${what}`, async () => {
+        const tab = await openFile(browser, temporaryFile('leaf.html', change(pressedDemo())));
         assert.equal(await waitForState(tab, 'ready', 'failed', 'altered'), 'altered');
         const text = await shownText(tab);
         assert.doesNotMatch(text, VALUE);
@@ -56,9 +56,9 @@ for (const name of browserNames) {
       });
     }
 
-    it('runs no changed program: the text that stands in the file stays', async (context) => {
-      const leaf = withElement(pressedDemo(context), 'program', (text) => `${text}\nvoid 0`);
-      const tab = await openFile(browser, temporaryFile(context, 'leaf.html', leaf));
+    it('runs no changed program: the text that stands in the file stays', async () => {
+      const leaf = withElement(pressedDemo(), 'program', (text) => `${text}\nvoid 0`);
+      const tab = await openFile(browser, temporaryFile('leaf.html', leaf));
       await new Promise((resolve) => setTimeout(resolve, 500));
       assert.equal(await tab.evaluate(() => document.documentElement.dataset.state), undefined);
       const text = await shownText(tab);

@@ -2,7 +2,7 @@
 //
 // puppeteer-core, because one driver serves both: Chromium over its own protocol, Firefox over WebDriver BiDi.
 
-import { execFileSync } from 'node:child_process';
+import { execFileSync, spawnSync } from 'node:child_process';
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { tmpdir } from 'node:os';
@@ -127,6 +127,34 @@ export async function typeInto(tab, selector, text) {
   await tab.keyboard.type(text);
 }
 
+/**
+ * Presses the button whose name begins with this text.
+ * @param {Tab} tab
+ * @param {string} name
+ */
+export async function pressButton(tab, name) {
+  const handle = await tab.waitForFunction(
+    (wanted) =>
+      [...document.querySelectorAll('button')].find((button) =>
+        (button.getAttribute('aria-label') ?? button.innerText).trim().startsWith(wanted),
+      ),
+    { timeout: 10_000 },
+    name,
+  );
+  await /** @type {import('puppeteer-core').ElementHandle<Element>} */ (handle.asElement()).click();
+}
+
+/**
+ * Loads the demo of this name into the sheet.
+ * @param {Tab} tab
+ * @param {string} name
+ */
+export async function loadDemo(tab, name) {
+  await pressButton(tab, 'Sheet');
+  await pressButton(tab, `Demo: ${name}`);
+  await tab.waitForFunction(() => document.querySelectorAll('input[data-column="indication"]').length > 3, { timeout: 10_000 });
+}
+
 /** The text that a person sees. @param {Tab} tab */
 export function shownText(tab) {
   return tab.evaluate(() => document.body.innerText);
@@ -142,33 +170,32 @@ export async function picture(tab, name) {
   if (directory) await tab.screenshot({ path: /** @type {`${string}.png`} */ (join(directory, `${name}.png`)) });
 }
 
-/**
- * A directory that is removed after the test.
- * @param {import('node:test').TestContext} context
- */
-export function temporaryDirectory(context) {
-  const directory = mkdtempSync(join(tmpdir(), 'bandleaf-'));
-  context.after(() => rmSync(directory, { recursive: true, force: true }));
-  return directory;
+/** Everything temporary lies in one directory, which goes when the process ends. */
+const temporary = mkdtempSync(join(tmpdir(), 'bandleaf-'));
+process.on('exit', () => rmSync(temporary, { recursive: true, force: true }));
+
+/** A new directory, removed in the end. */
+export function temporaryDirectory() {
+  return mkdtempSync(join(temporary, 'test-'));
 }
 
 /**
- * Writes a file into a temporary directory and tells its path.
- * @param {import('node:test').TestContext} context
+ * Writes a file into a new directory and tells its path.
  * @param {string} name
  * @param {string|Uint8Array} content
  */
-export function temporaryFile(context, name, content) {
-  const path = join(temporaryDirectory(context), name);
+export function temporaryFile(name, content) {
+  const path = join(temporaryDirectory(), name);
   writeFileSync(path, content);
   return path;
 }
 
 /**
- * Runs the release binary.
+ * Runs the release binary; what it prints. Status 2 with output is a report of what cannot be computed.
  * @param {string[]} args
- * @param {{ input?: string }} [options]
  */
-export function command(args, { input } = {}) {
-  return execFileSync(binary, args, { encoding: 'utf8', input, maxBuffer: 1 << 28 });
+export function command(args) {
+  const { status, stdout, stderr, error } = spawnSync(binary, args, { encoding: 'utf8', maxBuffer: 1 << 28 });
+  if (error ?? (status !== 0 && !(status === 2 && stdout !== ''))) throw new Error(`bandleaf ${args.join(' ')}: ${error ?? stderr}`);
+  return stdout;
 }

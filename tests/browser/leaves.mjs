@@ -7,12 +7,9 @@ import { command, root, temporaryDirectory } from './harness.mjs';
 
 export const demoVisit = join(root, 'web', 'demo', 'header-tank.json');
 
-/**
- * The demo visit, pressed.
- * @param {import('node:test').TestContext} context
- */
-export function pressedDemo(context) {
-  const file = join(temporaryDirectory(context), 'leaf.html');
+/** The demo visit, pressed. */
+export function pressedDemo() {
+  const file = join(temporaryDirectory(), 'leaf.html');
   command(['press', demoVisit, '--out', file]);
   return readFileSync(file, 'utf8');
 }

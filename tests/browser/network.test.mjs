@@ -45,10 +45,10 @@ for (const name of browserNames) {
       assert.deepEqual([...hits], []);
     });
 
-    it('is hit by every planted attempt where the policy is taken out', async (context) => {
+    it('is hit by every planted attempt where the policy is taken out', async () => {
       const page = readFileSync(pageFile, 'utf8');
       assert.match(page, POLICY);
-      const tab = await openFile(browser, temporaryFile(context, 'page.html', page.replace(POLICY, '')));
+      const tab = await openFile(browser, temporaryFile('page.html', page.replace(POLICY, '')));
       await plant(tab);
       assert.deepEqual([...hits].sort(), [
         '/beacon',

@@ -24,8 +24,8 @@ for (const name of browserNames) {
       await picture(tab, `blank-${name}`);
     });
 
-    it('opens a pressed leaf as identical, with its value', async (context) => {
-      const file = temporaryFile(context, 'leaf.html', pressedDemo(context));
+    it('opens a pressed leaf as identical, with its value', async () => {
+      const file = temporaryFile('leaf.html', pressedDemo());
       const tab = await openFile(browser, file);
       assert.equal(await waitForState(tab, 'ready', 'failed', 'altered'), 'ready', await shownText(tab));
       const outcome = await tab.evaluate(() => {
@@ -38,9 +38,9 @@ for (const name of browserNames) {
       await picture(tab, `leaf-${name}`);
     });
 
-    it('says so where the core cannot be unpacked', async (context) => {
+    it('says so where the core cannot be unpacked', async () => {
       const page = readFileSync(pageFile, 'utf8');
-      const tab = await openFile(browser, temporaryFile(context, 'cut.html', page.slice(0, page.length / 2)));
+      const tab = await openFile(browser, temporaryFile('cut.html', page.slice(0, page.length / 2)));
       const text = await shownText(tab);
       assert.match(text, /damaged/);
       assert.match(text, /original file/);

@@ -15,10 +15,10 @@ describe('same bits', () => {
   /** @type {string[]} */
   let fromBinary = [];
 
-  before((context) => {
-    const directory = temporaryDirectory(/** @type {import('node:test').TestContext} */ (context));
+  before(() => {
+    const directory = temporaryDirectory();
     const list = join(directory, 'visits.jsonl');
-    execFileSync('cargo', ['run', '--quiet', '--locked', '-p', 'bandleaf-tests', '--bin', 'generate_visits', '--', String(VISITS), list], {
+    execFileSync('cargo', ['run', '--quiet', '--locked', '--bin', 'generate_visits', '--', String(VISITS), list], {
       cwd: root,
       stdio: 'inherit',
     });
