@@ -7,9 +7,22 @@ const HEX: &[u8; 16] = b"0123456789abcdef";
 
 /// The digest of bytes, as it stands in a seal.
 pub fn sha256(bytes: &[u8]) -> String {
+    written(Sha256::digest(bytes).as_slice())
+}
+
+/// The digest of texts one after the other.
+pub(crate) fn sha256_of<'t>(texts: impl IntoIterator<Item = &'t str>) -> String {
+    let mut hash = Sha256::new();
+    for text in texts {
+        hash.update(text);
+    }
+    written(hash.finalize().as_slice())
+}
+
+fn written(digest: &[u8]) -> String {
     let mut text = String::with_capacity(PREFIX.len() + 64);
     text.push_str(PREFIX);
-    for byte in Sha256::digest(bytes) {
+    for byte in digest {
         text.push(char::from(HEX[usize::from(byte >> 4)]));
         text.push(char::from(HEX[usize::from(byte & 15)]));
     }

@@ -114,13 +114,14 @@ impl Page {
 
     /// The file, to the byte.
     pub fn assemble(&self) -> Vec<u8> {
-        let Texts { style, shell, seal, visit, wasm, program } = &self.texts;
-        let mut file = Vec::new();
-        for (piece, text) in self.pieces.iter().zip([style, shell, seal, visit, wasm, program, &String::new()]) {
-            file.extend_from_slice(piece.as_bytes());
-            file.extend_from_slice(text.as_bytes());
-        }
-        file
+        self.parts(&self.texts.seal).concat().into_bytes()
+    }
+
+    /// The file piece by piece, with this text as its seal.
+    pub(crate) fn parts<'p>(&'p self, seal: &'p str) -> [&'p str; 13] {
+        let [p0, p1, p2, p3, p4, p5, p6] = &self.pieces;
+        let Texts { style, shell, seal: _, visit, wasm, program } = &self.texts;
+        [p0, style, p1, shell, p2, seal, p3, visit, p4, wasm, p5, program, p6]
     }
 
     /// The texts of its elements.

@@ -1,7 +1,7 @@
 //! The seal: digests of every part, the numbers of the report, and the digest of the file with that value blanked.
 
 use crate::canonical::{canonical_text, element_text};
-use crate::digest::{blank, sha256};
+use crate::digest::{blank, sha256, sha256_of};
 use crate::document::json;
 use crate::page::{Page, Texts};
 use serde_json::Value;
@@ -97,8 +97,7 @@ impl Seal {
 
 /// The digest of the file in which this seal stands, with the digits of that digest blanked.
 pub(crate) fn file_digest(page: &Page, seal: &Seal) -> String {
-    let blanked = page.with(seal.with_file(&blank()).text(), page.texts().visit.clone());
-    sha256(&blanked.assemble())
+    sha256_of(page.parts(&seal.with_file(&blank()).text()))
 }
 
 /// The program parts that are not as the seal says.

@@ -87,6 +87,10 @@ fn plain(value: &JsValue, place: &str, depth: usize) -> Result<Option<Value>, Pr
             entries.map(|(at, entry)| Ok(plain(&entry, &format!("{place}[{at}]"), depth + 1)?.unwrap_or_default()));
         return entries.collect::<Result<Vec<Value>, Problem>>().map(|list| Some(Value::Array(list)));
     }
+    if value.is_bigint() {
+        let sentence = format!("There is a whole number of any size at {place}: give an ordinary number.");
+        return Err(Problem::error("wrong_kind", place, sentence));
+    }
     if value.is_object() && !value.is_function() {
         return fields(value.unchecked_ref(), place, depth).map(Some);
     }
