@@ -60,6 +60,7 @@ export function ReadingField({ state, dispatch, id }) {
         aria-describedby={`${id}-words`}
         title="Several repeats of one reading: 812; 813"
         onInput={(event) => dispatch({ type: 'reading', text: event.currentTarget.value })}
+        onFocus={(event) => event.currentTarget.select()}
       />
       <span class="unit">{outputUnit(visit)}</span>
       {names.map((name) => (
@@ -161,7 +162,7 @@ function Coefficients({ core, report }) {
             <tr key={term.term}>
               <th scope="row">
                 {letter(at)}
-                <small>{term.term === '1' ? '' : `·${term.term}`}</small>
+                <small>{term.term === '1' ? '' : `·${term.display}`}</small>
               </th>
               <td>{core.format_value(term.estimate, (term.interval[1] - term.interval[0]) / 2, term.unit)}</td>
             </tr>

@@ -85,7 +85,7 @@ export function Drafts({ core, store, state, dispatch, onClose }) {
     takeUp(core, store, draft);
   };
   return (
-    <>
+    <div class="kept-drafts">
       <h3>Drafts this browser has kept</h3>
       <ul class="plain drafts">
         {state.drafts.map((draft) => (
@@ -103,7 +103,7 @@ export function Drafts({ core, store, state, dispatch, onClose }) {
           </li>
         ))}
       </ul>
-    </>
+    </div>
   );
 }
 

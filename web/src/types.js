@@ -39,7 +39,7 @@
  * }} Visit
  */
 
-/** @typedef {{ term: string, estimate: number, scale: number|null, standard_uncertainty: number|null, interval: Interval, unit: string }} TermReport */
+/** @typedef {{ term: string, display: string, estimate: number, scale: number|null, standard_uncertainty: number|null, interval: Interval, unit: string }} TermReport */
 
 /**
  * @typedef {{

@@ -99,6 +99,11 @@ impl Mixture {
         self.parts.iter().map(|p| p.weight * p.law.cdf((Dd::from(y) - p.location).to_f64() / p.scale)).sum()
     }
 
+    /// Twice the smaller tail at y.
+    pub fn two_sided_tail(&self, y: Dd) -> f64 {
+        self.parts.iter().map(|p| 2.0 * p.weight * p.law.cdf(-((y - p.location).to_f64() / p.scale).abs())).sum()
+    }
+
     /// y with P(Y ≤ y) = `probability`, by bisection between the extreme quantiles of the parts.
     pub fn quantile(&self, probability: f64) -> f64 {
         let of_part = |p: &Part| (p.location + Dd::from_product(p.scale, p.law.quantile(probability))).to_f64();

@@ -22,6 +22,9 @@ use crate::visit::{KnownValue, Orientation, Reading, is_usable};
 /// A further mode counts where this much of the probability belongs to it.
 const MODE_MASS: f64 = 0.005;
 
+/// A reading that is less likely than this at every value is out of reach of the curve.
+const OUT_OF_REACH: f64 = 1e-3;
+
 /// The density at an end of the extent counts where it is this share of the greatest.
 const END_SHARE: f64 = 1e-3;
 
@@ -182,16 +185,26 @@ impl Reader<'_> {
         };
         let mut described = density.describe(self.scope.coverage, &log_density);
         described.log_mean -= float::ln(unit);
-        self.finish(described, extent, value);
-        self.check_extent(&density, extent, &log_density, value);
         if found.is_empty() {
             value.flags.push("unattainable");
+            let places = described.modes.iter().chain(&extent).chain([&described.median]);
+            let likeliest = places.map(|&x| self.predictor.indication(x, influences, new).two_sided_tail(mean));
+            if !likeliest.into_iter().any(|tail| tail >= OUT_OF_REACH) {
+                value.messages.push(Problem::error(
+                    "unattainable",
+                    "indications",
+                    "The curve does not come near this reading anywhere in its extended range, so no value goes with it: check the reading and its unit.",
+                ));
+                return;
+            }
             value.messages.push(Problem::warning(
                 "unattainable",
                 "indications",
-                "The curve does not reach this reading anywhere in its extended range: check the reading and its unit.",
+                "The curve does not quite reach this reading anywhere in its extended range; the values at which it comes nearest are given: check the reading and its unit.",
             ));
         }
+        self.finish(described, extent, value);
+        self.check_extent(&density, extent, &log_density, value);
         self.settle(influences, new, value);
     }
 
@@ -376,6 +389,7 @@ impl Reader<'_> {
         } else if plain {
             format!("{} {unit} [{}]", display::to_match(median, half), display::interval(low, high, "").trim_end())
         } else {
+            // Several values fit, or none does and these are the nearest: never a ±.
             let parts: Vec<String> =
                 report.highest_density.iter().map(|r| display::interval(r[0], r[1], unit)).collect();
             parts.join(" or ")
