@@ -21,7 +21,10 @@ pub fn document(arguments: &Appraise, bytes: &[u8], name: &str) -> Result<Docume
     let unread: Vec<&Problem> = intake.problems.iter().filter(|problem| problem.level == Level::Error).collect();
     if let Some((first, others)) = unread.split_first() {
         let more = if others.is_empty() { String::new() } else { format!(" ({} more in this table.)", others.len()) };
-        return Err(Refusal::new(format!("{name}: {}{more} Correct the table or the command line and try again.", first.sentence)));
+        return Err(Refusal::new(format!(
+            "{name}: {}{more} Correct the table or the command line and try again.",
+            first.sentence
+        )));
     }
     let visit = visit(&intake, terms, &arguments.readings);
     visit.and_then(Document::from_value).map_err(|problem| Refusal::of_file(name, &problem))
