@@ -13,7 +13,7 @@ use bandleaf_core::report::Curve;
 use bandleaf_intake::{Intake, Options};
 use bandleaf_leaf::{Appraised, Opened, Page, canonical_json};
 use js_sys::Float64Array;
-use objects::{document, from_object, options, say_panics, thrown, to_large_object, to_object};
+use objects::{document, from_object, options, say_panics, thrown, to_large_object, to_object, to_small_object};
 use wasm_bindgen::prelude::*;
 
 /// Numbers in each row of a curve.
@@ -112,7 +112,7 @@ fn taken_in(object: &JsValue, read: impl FnOnce(&Options) -> Intake) -> Result<J
 /// Reads one typed cell.
 #[wasm_bindgen]
 pub fn parse_cell(text: &str) -> Result<JsValue, JsValue> {
-    to_object(&bandleaf_intake::parse_cell(text))
+    to_small_object(&bandleaf_intake::parse_cell(text))
 }
 
 /// `1711.2 ± 2.1 mm`.

@@ -18,11 +18,16 @@ const DEEPEST: usize = 128;
 
 /// A problem as the object that is thrown.
 pub(crate) fn thrown(problem: Problem) -> JsValue {
-    to_object(&problem).unwrap_or_else(|_| JsValue::from_str(&problem.sentence))
+    to_small_object(&problem).unwrap_or_else(|_| JsValue::from_str(&problem.sentence))
 }
 
-/// Plain objects and lists, `null` for what is not known. By way of JSON text, which costs the page a tenth of the code
-/// that building objects field by field does; the text is the canonical one, so that each type is written out in one way.
+/// A small flat thing as a plain object, `null` for what is not known, built field by field.
+pub(crate) fn to_small_object<T: Serialize>(value: &T) -> Result<JsValue, JsValue> {
+    Ok(value.serialize(&serde_wasm_bindgen::Serializer::json_compatible())?)
+}
+
+/// The same for a report or a part of one. By way of JSON text, which for types of this size costs the page a tenth of
+/// the code; the text is the canonical one, so that each type is written out in one way.
 pub(crate) fn to_object<T: Serialize>(value: &T) -> Result<JsValue, JsValue> {
     let text = bandleaf_leaf::canonical_json(value).map_err(|problem| JsValue::from_str(&problem.sentence))?;
     js_sys::JSON::parse(&text)
@@ -119,7 +124,8 @@ fn fields(object: &Object, place: &str, depth: usize) -> Result<Value, Problem> 
     Ok(Value::Object(map))
 }
 
-/// Has the words of a panic written to the console: what is thrown then says nothing but "unreachable".
+/// Has the words of a panic written to the console, in builds that keep them: what is thrown says nothing but
+/// "unreachable".
 pub(crate) fn say_panics() {
     static ONCE: Once = Once::new();
     ONCE.call_once(|| {
