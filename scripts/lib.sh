@@ -55,7 +55,7 @@ with_wasm_toolchain() {
     fi
     sysroot="$(rustc --print sysroot)"
     # Of several prefixes that match, the compiler takes the last.
-    flags=(-Ctarget-feature=+simd128 -Zunstable-options -Cpanic=immediate-abort -Zlocation-detail=none -Zfmt-debug=none
+    flags=(-Zunstable-options -Cpanic=immediate-abort -Zlocation-detail=none -Zfmt-debug=none
       "--remap-path-prefix=$root=/bandleaf" "--remap-path-prefix=$sysroot=/rust"
       "--remap-path-prefix=$home=/cargo")
     for registry in "$home"/registry/src/*; do flags+=("--remap-path-prefix=$registry=/crates"); done
