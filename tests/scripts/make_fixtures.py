@@ -546,7 +546,7 @@ class Oracle:
             self.expect += [absolute(f"{at}.{field}[{j}]", out[key][j], near) for j in (0, 1)]
         self.expect += [absolute(f"{at}.modes[{j}]", mode, near) for j, mode in enumerate(out["modes_inside"])]
         ends = out["relative_density_at_ends"]
-        self.expect += [absolute(f"{at}.relative_density_at_ends[{j}]", ends[j], 1e-6) for j in (0, 1)]
+        self.expect += [absolute(f"{at}.relative_density_at_ends[{j}]", ends[j], 1e-9) for j in (0, 1)]
         predictive = out["log_predictive_mean_over_range"]
         self.expect.append(relative(f"{at}.log_predictive_mean", predictive, 1e-9))
         ends = [Decimal(str(end)) for end in self.raw["inputs"]["range"]]
@@ -637,7 +637,7 @@ def oracle(reference):
         "Figures relative to the largest magnitude in the same list, to max(1e-10, 20 × the change of the exact result "
         "when its inputs are rounded to f64). Places on the value axis to 1e-6 of the value's standard uncertainty. "
         "A density between two places of the report is interpolated, hence its wider bound; the report draws no density "
-        "at the very ends of the extent, so there only its ratio to the greatest density is compared, to 1e-6."
+        "at the very ends of the extent, so there only its ratio to the greatest density is compared, to 1e-9."
     )
     write("oracle.json", {"what": "The model's definitions evaluated in multiple precision", "note": note, "cases": cases})
 
