@@ -213,6 +213,7 @@ impl Appraisal {
 
     /// The report without the curve.
     pub fn outline(&self) -> Report {
+        let diagnostics = self.fitted.as_ref().map(|f| self.all_diagnostics(f)).unwrap_or_default();
         Report {
             schema: SCHEMA,
             program: Program { name: "bandleaf", version: env!("CARGO_PKG_VERSION"), method: METHOD },
@@ -223,11 +224,11 @@ impl Appraisal {
             },
             coverage: self.coverage,
             units: self.units(),
-            fit: self.fitted.as_ref().map(|f| self.fit_report(f)),
+            fit: self.fitted.as_ref().map(|f| self.fit_report(f, &diagnostics)),
             curve: None,
             at: self.visit.ask.at.iter().filter_map(|place| self.at(place)).collect(),
             readings: self.visit.ask.readings.iter().map(|asked| self.read(&asked.to_reading())).collect(),
-            points: self.points(),
+            points: self.points(&diagnostics),
             checks: self
                 .fitted
                 .iter()
@@ -378,7 +379,7 @@ impl Appraisal {
         Units { input, output, response, argument, variable: variable(self.visit.model.orientation).to_owned() }
     }
 
-    fn fit_report(&self, fitted: &Fitted) -> Fit {
+    fn fit_report(&self, fitted: &Fitted, diagnostics: &[RowDiagnostics]) -> Fit {
         let (posterior, shape) = (&fitted.posterior, &fitted.shape);
         let p = shape.columns();
         let units = self.units();
@@ -408,7 +409,6 @@ impl Appraisal {
         let matrix = |factor: f64| -> Vec<Vec<f64>> {
             (0..p).map(|i| (0..p).map(|j| (scale_matrix[(i, j)] * factor).to_f64()).collect()).collect()
         };
-        let diagnostics = self.all_diagnostics(fitted);
         let left_out: Option<Vec<f64>> = diagnostics.iter().map(|d| d.left_out_log_density).collect();
         let (n, nu) = (fitted.rows.len(), law.degrees_of_freedom());
         Fit {
@@ -526,8 +526,7 @@ impl Appraisal {
     }
 
     /// One entry for each indication of a complete point, in the order given.
-    fn points(&self) -> Vec<PointReport> {
-        let diagnostics = self.fitted.as_ref().map(|f| self.all_diagnostics(f)).unwrap_or_default();
+    fn points(&self, diagnostics: &[RowDiagnostics]) -> Vec<PointReport> {
         let mut used = self.fitted.iter().flat_map(|f| f.rows.iter().enumerate()).peekable();
         let mut reports = Vec::new();
         for (index, point) in self.visit.points.iter().enumerate() {
