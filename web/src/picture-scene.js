@@ -4,7 +4,7 @@
 // (residuals).
 
 /** @import { Curve, Orientation, Point, PointReport, State, View } from './types.js' */
-import { extent } from 'd3-array';
+import { extent, max } from 'd3-array';
 import { argumentOf, axisNames, orientationOf, responseOf } from './picture-range.js';
 import { pointsOf } from './visit.js';
 import { outputUnit } from './words.js';
@@ -33,12 +33,23 @@ export function viewsOf({ drawn, report }) {
 }
 
 /**
+ * The view that was chosen; otherwise errors, unless they are as large as the indications themselves, as where units are
+ * not stated yet.
  * @param {State} state
  * @returns {View}
  */
 export function viewOf(state) {
   const views = viewsOf(state);
-  return views.includes(state.view) ? state.view : views[0];
+  if (state.view && views.includes(state.view)) return state.view;
+  return views[0] === 'error' && !errorsAreSmall(state.report) ? 'value' : views[0];
+}
+
+/** @param {State['report']} report */
+function errorsAreSmall(report) {
+  const rows = rowsOf(report).filter((row) => row.used && row.error !== null);
+  const [low, high] = extent(rows, (row) => row.indication);
+  const largest = max(rows, (row) => Math.abs(row.error ?? 0)) ?? 0;
+  return low === undefined || largest <= 0.3 * (high - low) || low === high;
 }
 
 /**

@@ -39,7 +39,7 @@ export function createStore(core, helper, { visit, origin, stage, opened, mode }
     followedOf: null,
     reading: firstReading(visit),
     answer: { problem: null, alternatives: null, value: null },
-    view: 'error',
+    view: null,
     panel: null,
     notice: null,
     notesOpen: false,

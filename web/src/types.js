@@ -124,7 +124,7 @@
  *   visit: Visit, origin: string, revision: number, past: Step[], future: Step[], lastMerge: string|null, saved: Visit|null,
  *   report: Report|null, drawn: Drawn|null, asFoundCurve: Curve|null, unread: Unread|null, busy: boolean, said: string, followedOf: Visit|null,
  *   reading: Reading, answer: Answer,
- *   view: View, panel: Panel|null, notice: Notice|null, notesOpen: boolean, entering: PointState, firstRow: number,
+ *   view: View|null, panel: Panel|null, notice: Notice|null, notesOpen: boolean, entering: PointState, firstRow: number,
  *   opened: Opened|null, stage: 'sheet'|'leaf'|'altered', drafts: Draft[], mode: string
  * }} State
  */

@@ -120,7 +120,7 @@ impl Refusal {
                 )
             }
             Refusal::TooLong => format!("{cell} is too long to be a number."),
-            Refusal::Text => format!("{cell} is text, not a number."),
+            Refusal::Text => format!("{cell} is text, not a number; type the number, or clear the cell."),
             Refusal::OtherUnit { cell: unit, column } => {
                 format!(
                     "{cell} is in {}, but the column is in {}; convert the value.",
