@@ -102,7 +102,7 @@ impl Refusal {
             }
             Refusal::Malformed => {
                 format!(
-                    "{cell} is no number: its points, commas or spaces do not divide it into thousands or decimals."
+                    "{cell} is no number: its points, commas or spaces do not divide it into thousands or decimals; type it plainly."
                 )
             }
             Refusal::Extra(extra) => {
@@ -112,14 +112,16 @@ impl Refusal {
                 )
             }
             Refusal::TooLarge => {
-                format!("{cell} is larger than any number that can be computed with (1.8e308).")
+                format!(
+                    "{cell} is larger than any number that can be computed with (1.8e308); correct it, or choose another unit."
+                )
             }
             Refusal::TooSmall => {
                 format!(
                     "{cell} is nearer to zero than any number that can be computed with (5e-324); type 0 if it is zero."
                 )
             }
-            Refusal::TooLong => format!("{cell} is too long to be a number."),
+            Refusal::TooLong => format!("{cell} is too long to be a number; type the number alone."),
             Refusal::Text => format!("{cell} is text, not a number; type the number, or clear the cell."),
             Refusal::OtherUnit { cell: unit, column } => {
                 format!(
