@@ -2,13 +2,18 @@
 
 /** @import { Core } from './types.js' */
 import notices from 'bandleaf:notices';
-import { useEffect, useRef } from 'preact/hooks';
+import { useEffect, useRef, useState } from 'preact/hooks';
+import { unpack } from './bindings.js';
 import { CAUTION } from './words.js';
 
 /** @param {{ core: Core, onClose: () => void }} props */
 export function About({ core, onClose }) {
   const dialog = useRef(/** @type {HTMLDialogElement|null} */ (null));
-  useEffect(() => dialog.current?.showModal(), []);
+  const [licences, setLicences] = useState('');
+  useEffect(() => {
+    dialog.current?.showModal();
+    unpack(notices).then((bytes) => setLicences(new TextDecoder().decode(bytes)));
+  }, []);
   return (
     <dialog ref={dialog} class="about" aria-labelledby="about-title" onClose={onClose}>
       <h2 id="about-title">Bandleaf {core.version()}</h2>
@@ -23,7 +28,7 @@ export function About({ core, onClose }) {
       <details>
         <summary>Licences of what is inside</summary>
         <pre class="licences" tabIndex={0}>
-          {notices}
+          {licences}
         </pre>
       </details>
       <button type="button" onClick={() => dialog.current?.close()}>
