@@ -67,10 +67,6 @@ pub struct Posterior {
     pub components: Vec<Component>,
     /// Σ eᵢ²/vᵢ over the rows of the data (over the row variances where they are known).
     pub residual_sum_of_squares: Dd,
-    /// Squared length of what the stacked system leaves, prior's rows included.
-    pub stacked_rest: Dd,
-    /// ν₀ s₀² of a stated noise, 0 otherwise.
-    pub stated_sum: f64,
     /// ln p(y); flat directions at density 1 and p(ln σ) = 1.
     pub log_evidence: Option<f64>,
     /// Whether no flat direction and no 1/σ entered.
@@ -147,8 +143,6 @@ pub fn fit(
         evidence_is_proper: prior.rank == p && !matches!(sigma, Sigma::Unknown),
         components: vec![component],
         residual_sum_of_squares,
-        stacked_rest: factor.rest,
-        stated_sum,
         condition_number: factor.condition_number(),
         inverse_triangle,
         deviations,
